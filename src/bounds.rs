@@ -1,0 +1,1 @@
+//! PURE: every range we accept and every bound on our work, each with its reason.

@@ -1,0 +1,1 @@
+//! IO: the only file that asks for time, ids or randomness.

@@ -1,0 +1,1 @@
+//! IO: settings from flags and environment.

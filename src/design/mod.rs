@@ -1,0 +1,1 @@
+//! PURE: which one to pick? From a need to supplies in preferred values.

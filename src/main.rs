@@ -1,0 +1,2 @@
+//! The `mainstay` binary.
+fn main() {}

@@ -1,0 +1,1 @@
+//! PURE: how is it wired? Elements to one linear network per conduction pattern.

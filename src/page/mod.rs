@@ -1,0 +1,1 @@
+//! HTTP: how do people ask? The form page and its files.

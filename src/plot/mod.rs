@@ -1,0 +1,1 @@
+//! PURE: how is it shown? SVG plots of waveforms.

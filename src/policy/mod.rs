@@ -1,0 +1,1 @@
+//! PURE: is it allowed? Rules as data, ratings against stresses, verdicts.

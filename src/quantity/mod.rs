@@ -1,0 +1,1 @@
+//! PURE: what is a quantity? Units, bands and their text.

@@ -1,0 +1,1 @@
+//! PURE: how does it behave? Propagation, events, periodic state, transients.

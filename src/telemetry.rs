@@ -1,0 +1,1 @@
+//! IO: logs and metrics.

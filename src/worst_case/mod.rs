@@ -1,0 +1,1 @@
+//! PURE: how bad can it get? Corners and the extremes over them.
