@@ -149,6 +149,8 @@ pub struct Pattern {
     pub conducting: u64,
     /// Length of the minimal state.
     pub states: usize,
+    /// How many of the states, the first ones, are voltages; the rest are currents.
+    pub voltages: usize,
     /// Length of the extended state.
     pub width: usize,
     /// `dx/dt`, a row a state.

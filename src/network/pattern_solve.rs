@@ -308,6 +308,7 @@ impl Reduction<'_> {
         Ok(Pattern {
             conducting: self.conducting,
             states: self.states,
+            voltages: capacitors,
             width: self.width,
             rate,
             weight,

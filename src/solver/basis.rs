@@ -10,6 +10,8 @@ use nalgebra::Complex;
 
 /// Modes slower than this per cycle take the form that keeps its digits.
 const SLOW: f64 = 0.02;
+/// What a sinusoid counts for at its zero, of its amplitude, where rounding is judged.
+pub(super) const SINUSOID_FLOOR: f64 = 1e-3;
 /// Terms of the series of `(e^z - 1) / z` for slow modes: `0.02^8 / 9!` is below rounding.
 pub(super) const SLOW_TERMS: usize = 8;
 
@@ -134,9 +136,20 @@ impl Basis {
         signal.iter().zip(values).map(|(a, b)| a * b).sum()
     }
 
-    /// The size of a signal: the sum of its terms' magnitudes.
+    /// The size of a signal: the sum of its terms' magnitudes. A sinusoid counts for at least a thousandth of its amplitude,
+    /// since near its zero its own rounding does not shrink with it.
     #[must_use]
-    pub fn magnitude(signal: &[f64], values: &[f64]) -> f64 {
-        signal.iter().zip(values).map(|(a, b)| (a * b).abs()).sum()
+    pub fn magnitude(&self, signal: &[f64], values: &[f64]) -> f64 {
+        let sinusoids = 1..=2 * self.angular.len();
+        signal
+            .iter()
+            .zip(values)
+            .enumerate()
+            .map(|(index, (a, b))| {
+                let value = b.abs();
+                let floor = if sinusoids.contains(&index) { SINUSOID_FLOOR } else { 0.0 };
+                a.abs() * value.max(floor)
+            })
+            .sum()
     }
 }

@@ -8,6 +8,7 @@
 //! and Vandewalle 1989.
 
 use super::SolverError;
+use super::basis::SINUSOID_FLOOR;
 use super::regime::Regime;
 use crate::network::{Network, Unsolvable};
 
@@ -163,9 +164,6 @@ impl<'a> Regimes<'a> {
                     Ok(_) => {}
                 }
             }
-            if fallback.is_some() && distance >= 2 {
-                break;
-            }
         }
         fallback.ok_or(SolverError::NoConduction {
             time: instant.time,
@@ -265,9 +263,20 @@ pub fn multiply(rows: &nalgebra::DMatrix<f64>, extended: &[f64]) -> Vec<f64> {
         .collect()
 }
 
+/// The magnitudes that rounding is a fraction of: a component near its zero counts for a part of its scale.
+fn rounding_sizes(network: &Network, regime: &Regime, extended: &[f64]) -> Vec<f64> {
+    let n = regime.pattern.states;
+    let floor = |index: usize| match index {
+        _ if index < regime.pattern.voltages => SINUSOID_FLOOR * network.voltage_scale,
+        _ if index < n => SINUSOID_FLOOR * network.current_scale,
+        _ => SINUSOID_FLOOR,
+    };
+    extended.iter().enumerate().map(|(index, v)| v.abs().max(floor(index))).collect()
+}
+
 /// The extended state and its time derivatives.
 fn derivatives(network: &Network, regime: &Regime, extended: Vec<f64>) -> Vec<Derivative> {
-    let size = extended.iter().map(|v| v.abs()).collect();
+    let size = rounding_sizes(network, regime, &extended);
     let mut all = vec![Derivative { value: extended, size }];
     let sizes = regime.pattern.rate.abs();
     for order in 1..ORDERS {

@@ -165,7 +165,7 @@ impl<'a> Search<'a> {
         if at_start && !envelope.any {
             // What rounding left of a derivative that is zero must not be taken for its sign.
             for (value, signal) in c.iter_mut().zip(&self.derivatives[index]) {
-                if value.abs() > NOISE * Basis::magnitude(signal, values) {
+                if value.abs() > NOISE * self.basis.magnitude(signal, values) {
                     break;
                 }
                 *value = 0.0;
@@ -267,12 +267,11 @@ impl<'a> Search<'a> {
                 high = at;
             }
             let newton = at - value / slope;
-            let next = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
-            let close = (next - at).abs() <= 2.0 * f64::EPSILON * (self.start.abs() + at);
-            at = next;
-            if close || value == 0.0 {
+            let close = 2.0 * f64::EPSILON * (self.start.abs() + at);
+            if (newton - at).abs() <= close || high - low <= close {
                 break;
             }
+            at = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
         }
         self.scratch = scratch;
         at

@@ -240,7 +240,7 @@ pub fn take_extremes(basis: &Basis, flow: &Flow, signal: &[f64], extremes: &mut 
     let mut slope = signal.to_vec();
     basis.differentiate(&mut slope);
     basis.values(flow.start, 0.0, &mut scratch);
-    let quiet = 1e-12 * Basis::magnitude(&slope, &scratch);
+    let quiet = 1e-12 * basis.magnitude(&slope, &scratch);
     let mut from = 0.0;
     // A signal turns a few times at most between two events; the bound only guards against rounding.
     for _ in 0..64 {
@@ -268,7 +268,7 @@ fn slope_sign(basis: &Basis, flow: &Flow, slope: &[f64], from: f64, quiet: f64, 
     for order in 0..3 {
         basis.values(flow.start + from, from, scratch);
         let value = Basis::dot(&derivative, scratch);
-        let floor = if order == 0 { quiet } else { 1e-12 * Basis::magnitude(&derivative, scratch) };
+        let floor = if order == 0 { quiet } else { 1e-12 * basis.magnitude(&derivative, scratch) };
         if value.abs() > floor {
             return value.signum();
         }

@@ -18,6 +18,10 @@ const ACCEPTABLE: f64 = 1e-9;
 /// The cycle is taken to begin this fraction before the line's zero crossing, where no circuit changes conduction by
 /// symmetry alone.
 const BEFORE_ZERO: f64 = 0.03;
+/// A cycle in which no diode conducts tells nothing of the charge that it settles at (without a load it even repeats
+/// itself): the search begins below that, lowering its guess by this factor at most so many times.
+const IDLE_FACTOR: f64 = 0.93;
+const IDLE_STEPS: usize = 60;
 /// Halvings of one Newton step.
 const HALVINGS: usize = 6;
 
@@ -146,6 +150,13 @@ impl<'a> Shooting<'a> {
         let mut best: Option<(f64, DVector<f64>)> = None;
         let mut marches = 0;
         let mut shot = self.shoot(&full, true)?;
+        for _ in 0..IDLE_STEPS {
+            if shot.conducted {
+                break;
+            }
+            full *= IDLE_FACTOR;
+            shot = self.shoot(&full, true)?;
+        }
         while self.work.cycles < CYCLES_MAXIMUM {
             self.work.iterations += 1;
             if best.as_ref().is_none_or(|(residual, _)| shot.residual < *residual) {
