@@ -92,7 +92,6 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
             });
         };
         work.events += 1;
-        if std::env::var("DBG").is_ok() { eprintln!("ev tag {} since {:e} t {:e} pat {:b}", crossing.tag, crossing.since, stretch.time, hint); for x in &watched { eprintln!("   {} {:?}", x.tag, x.signal); } }
         hint ^= 1 << crossing.tag;
         if stretch.time >= end {
             stretch.time = end;

@@ -22,6 +22,9 @@ const BEFORE_ZERO: f64 = 0.03;
 /// itself): the search begins below that, lowering its guess by this factor at most so many times.
 const IDLE_FACTOR: f64 = 0.93;
 const IDLE_STEPS: usize = 60;
+/// Largest change of a capacitor's voltage in one Newton step, of the largest rail voltage: where conduction only grazes the
+/// crest the derivative says nothing of what lies further down.
+const CHARGE_STEP: f64 = 0.3;
 /// Halvings of one Newton step.
 const HALVINGS: usize = 6;
 
@@ -162,7 +165,9 @@ impl<'a> Shooting<'a> {
             if best.as_ref().is_none_or(|(residual, _)| shot.residual < *residual) {
                 best = Some((shot.residual, full.clone()));
             }
-            let Some(step) = shot.derivative.as_ref().and_then(|d| newton_step(d, &shot.change)) else {
+            let correction = shot.derivative.as_ref().map(Correction::new);
+            let step = correction.as_ref().and_then(|c| c.step(&shot.change));
+            let (Some(correction), Some(step)) = (correction, step) else {
                 (full, shot) = self.march(full, 20)?;
                 continue;
             };
@@ -170,7 +175,7 @@ impl<'a> Shooting<'a> {
             if shot.residual <= TOLERANCE && length <= 100.0 * TOLERANCE {
                 return Ok(full + step);
             }
-            match self.damped(&full, &step, &shot)? {
+            match self.damped(&full, &correction, &step, &shot)? {
                 Some((next, taken)) => {
                     let stalled = taken.residual > 0.5 * shot.residual;
                     (full, shot) = (next, taken);
@@ -194,20 +199,27 @@ impl<'a> Shooting<'a> {
         }
     }
 
-    /// A Newton step, halved until it brings the state closer.
+    /// A Newton step, halved until it brings the state closer: until the next step, by the same derivative, is shorter.
+    /// That measure weighs slow charges and fast currents alike, whatever their time constants (Deuflhard 2004).
     fn damped(
         &mut self,
         full: &DVector<f64>,
+        correction: &Correction,
         step: &DVector<f64>,
         shot: &Shot,
     ) -> Result<Option<(DVector<f64>, Shot)>, SolverError> {
-        let mut factor = 1.0;
+        let network = self.regimes.network;
+        let length = self.size(step, full);
+        let charge = step.rows(0, network.capacitors.len()).amax() / network.voltage_scale;
+        let mut factor = if charge > CHARGE_STEP { CHARGE_STEP / charge } else { 1.0 };
         for _ in 0..HALVINGS {
             let next = full + step * factor;
             if let Ok(taken) = self.shoot(&next, true) {
                 // A cycle without conduction repeats itself at any charge: not the state that was looked for.
                 let idle = !taken.conducted && shot.conducted;
-                if !idle && (taken.residual < shot.residual || taken.residual <= TOLERANCE) {
+                let next_step = correction.step(&taken.change);
+                let shorter = next_step.is_some_and(|s| self.size(&s, full) < (1.0 - 0.25 * factor) * length);
+                if !idle && (shorter || taken.residual <= TOLERANCE) {
                     return Ok(Some((next, taken)));
                 }
             }
@@ -249,10 +261,21 @@ impl<'a> Shooting<'a> {
     }
 }
 
-/// `(1 - D) step = change`.
-fn newton_step(derivative: &DMatrix<f64>, change: &DVector<f64>) -> Option<DVector<f64>> {
-    let n = change.len();
-    let matrix = DMatrix::identity(n, n) - derivative;
-    let step = matrix.lu().solve(change)?;
-    step.iter().all(|v| v.is_finite()).then_some(step)
+/// Newton's correction by one derivative `D` of the cycle map: `(1 - D) step = change`.
+struct Correction {
+    factors: nalgebra::LU<f64, nalgebra::Dyn, nalgebra::Dyn>,
+}
+
+impl Correction {
+    fn new(derivative: &DMatrix<f64>) -> Self {
+        let n = derivative.nrows();
+        Self {
+            factors: (DMatrix::identity(n, n) - derivative).lu(),
+        }
+    }
+
+    fn step(&self, change: &DVector<f64>) -> Option<DVector<f64>> {
+        let step = self.factors.solve(change)?;
+        step.iter().all(|v| v.is_finite()).then_some(step)
+    }
 }
