@@ -14,6 +14,7 @@
 //! | 2 | [`worst_case`] | how bad can it get? |
 //! | 2 | [`policy`] | is it allowed? |
 //! | 2 | [`design`] | which one to pick? |
+//! | 2 | [`transient`] | what happens at switch-on? |
 //! | 2 | [`plot`] | how is it shown? |
 //! | 3 | [`description`] | how is a supply written down? |
 //! | 3 | [`app`] | what can be done? |
@@ -40,4 +41,5 @@ pub mod quantity;
 pub mod solver;
 pub mod supply;
 pub mod telemetry;
+pub mod transient;
 pub mod worst_case;

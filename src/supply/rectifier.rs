@@ -64,6 +64,18 @@ impl Circuit {
         matches!(self, Self::CentreTap | Self::SplitBridge)
     }
 
+    /// How many diodes it has.
+    #[must_use]
+    pub fn diodes(self) -> usize {
+        match self {
+            Self::HalfWave => 1,
+            Self::CentreTap | Self::FullWaveDoubler | Self::HalfWaveDoubler => 2,
+            Self::ThreePhaseHalfWave => 3,
+            Self::Bridge | Self::SplitBridge => 4,
+            Self::ThreePhaseBridge => 6,
+        }
+    }
+
     /// How many rails stand behind it.
     #[must_use]
     pub fn rails(self) -> usize {
