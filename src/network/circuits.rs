@@ -33,14 +33,9 @@ pub(super) fn network(supply: &Supply) -> Network {
         probes: Probes::default(),
         mirror: Mirror::default(),
     };
-    let feeds = match supply.transformer() {
+    let feeds = match supply.derived_transformer() {
         None => vec![wiring.line_feed(supply)],
-        Some(transformer) => {
-            let halves: Vec<f64> = (0..transformer.windings.len())
-                .map(|winding| if is_tapped(supply, winding) { 2.0 } else { 1.0 })
-                .collect();
-            wiring.transformer_feeds(supply, &transformer.derived(&halves))
-        }
+        Some(transformer) => wiring.transformer_feeds(supply, &transformer),
     };
     let mut voltage_scale: f64 = 0.0;
     let mut current_scale = 0.0;
@@ -89,13 +84,6 @@ fn idle_current(network: &Network) -> f64 {
         .sum();
     let current = network.voltage_scale * network.oscillator.angular_frequency * farads;
     if current > 0.0 { current } else { 1.0 }
-}
-
-fn is_tapped(supply: &Supply, winding: usize) -> bool {
-    supply
-        .outputs()
-        .iter()
-        .any(|o| o.winding == winding && o.rectifier.circuit.needs_tap())
 }
 
 fn oscillator(supply: &Supply) -> Oscillator {
@@ -256,7 +244,7 @@ impl Wiring {
         let common = Node::GROUND;
         // Ampere-turns of a secondary oppose those of the primary, hence the minus sign.
         let mut parts: Vec<(Node, f64)> = cores.iter().map(|&core| (core, -ratio)).collect();
-        let tapped = is_tapped(supply, index);
+        let tapped = supply.is_tapped(index);
         if tapped {
             parts.push((cores[0], ratio));
         }

@@ -124,6 +124,22 @@ impl Supply {
         &self.parts.surroundings
     }
 
+    /// Whether a winding is used with a tap.
+    #[must_use]
+    pub fn is_tapped(&self, winding: usize) -> bool {
+        self.outputs().iter().any(|o| o.winding == winding && o.rectifier.circuit.needs_tap())
+    }
+
+    /// What the circuit needs of the transformer, every band at its nominal value.
+    #[must_use]
+    pub fn derived_transformer(&self) -> Option<Derived> {
+        let transformer = self.transformer()?;
+        let halves: Vec<f64> = (0..transformer.windings.len())
+            .map(|winding| if self.is_tapped(winding) { 2.0 } else { 1.0 })
+            .collect();
+        Some(transformer.derived(&halves))
+    }
+
     /// The parts again, to build a changed supply from.
     #[must_use]
     pub fn into_parts(self) -> Parts {

@@ -22,6 +22,12 @@ pub(super) fn faults(parts: &Parts) -> Vec<Fault> {
     }
     for (index, output) in parts.outputs.iter().enumerate() {
         output_faults(parts, output, &format!("/outputs/{index}"), &mut faults);
+        let tap = output.rectifier.circuit.needs_tap();
+        let others = &parts.outputs[..index];
+        if others.iter().any(|o| o.winding == output.winding && o.rectifier.circuit.needs_tap() != tap) {
+            let detail = "an earlier output uses this winding the other way: a winding either has a tap or has none";
+            faults.push(Fault::new(format!("/outputs/{index}/winding"), detail));
+        }
     }
     faults
 }
