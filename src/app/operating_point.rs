@@ -58,6 +58,13 @@ fn operating_point(supply: &Supply, points: Option<usize>) -> Result<OperatingPo
 }
 
 impl App {
+    /// Pointer and unit of every figure that a supply has, in the figures' order; nothing is solved.
+    #[must_use]
+    pub fn figure_pointers(&self, supply: &Supply) -> Vec<(String, &'static str)> {
+        let shape = Figures::shaped(&Network::of(supply));
+        shape.pointers().into_iter().map(|(pointer, figure)| (pointer, figure.unit)).collect()
+    }
+
     /// Solves a supply without bands; `points` samples of one cycle where they are wanted.
     ///
     /// # Errors

@@ -4,16 +4,15 @@
 //! notes every fault with its pointer, [`read`] makes a [`crate::supply::Supply`], [`form`] is the shape that is published
 //! and written back.
 
+pub mod describe;
 pub mod fields;
 pub mod form;
 pub mod json;
 pub mod quantities;
 pub mod read;
 pub mod request;
-mod write;
 
 #[cfg(test)]
 mod tests;
 
-pub use read::read_supply;
-pub use write::describe;
+pub use read::{read_each, read_supply};

@@ -30,7 +30,7 @@ fn supply(place: &Place<'_>) -> Option<Parts> {
         None => Some(None),
         Some(place) => transformer(&place).map(Some),
     };
-    let outputs = f.required("outputs").and_then(|p| each(&p, output));
+    let outputs = f.required("outputs").and_then(|p| read_each(&p, output));
     let surroundings = match f.optional("surroundings") {
         None => Some(Surroundings::default()),
         Some(place) => surroundings(&place),
@@ -59,13 +59,13 @@ fn name(place: &Place<'_>) -> Option<String> {
 }
 
 /// Reads every item of an array; `None` where one of them is faulty, all of them looked at.
-pub(super) fn each<T>(place: &Place<'_>, read: impl Fn(&Place<'_>) -> Option<T>) -> Option<Vec<T>> {
+pub fn read_each<T>(place: &Place<'_>, read: impl Fn(&Place<'_>) -> Option<T>) -> Option<Vec<T>> {
     let items: Vec<Option<T>> = place.list()?.iter().map(read).collect();
     items.into_iter().collect()
 }
 
 /// Reads a line; also part of a need.
-pub(super) fn line(place: &Place<'_>) -> Option<Line> {
+pub fn line(place: &Place<'_>) -> Option<Line> {
     let mut f = place.object()?;
     let voltage = f.band("voltage", D::Voltage);
     let frequency = f.band("frequency", D::Frequency);
@@ -77,7 +77,7 @@ pub(super) fn line(place: &Place<'_>) -> Option<Line> {
     let inductance = f.band_or("inductance", D::Inductance, Band::ZERO);
     let harmonics = match f.optional("harmonics") {
         None => Some(Vec::new()),
-        Some(place) => each(&place, harmonic),
+        Some(place) => read_each(&place, harmonic),
     };
     f.finish("a line");
     Some(Line {
@@ -127,7 +127,7 @@ fn transformer(place: &Place<'_>) -> Option<Transformer> {
     let primary_voltage = f.band("primary_voltage", D::Voltage);
     let primary_resistance = f.band_if("primary_resistance", D::Resistance);
     let leakage = f.band_or("primary_leakage_inductance", D::Inductance, Band::ZERO);
-    let windings = f.required("windings").and_then(|p| each(&p, winding));
+    let windings = f.required("windings").and_then(|p| read_each(&p, winding));
     let regulation = f.band_if("regulation", D::Ratio);
     let rating = f.band_if("rating", D::ApparentPower);
     let core_loss = f.band_if("core_loss", D::Power);
@@ -176,7 +176,7 @@ fn output(place: &Place<'_>) -> Option<Output> {
     let most = crate::bounds::WINDINGS_MAXIMUM as u64;
     let winding = f.integer_or("winding", 0..=most, 0);
     let rectifier = f.required("rectifier").and_then(|p| rectifier(&p));
-    let rails = f.required("rails").and_then(|p| each(&p, rail));
+    let rails = f.required("rails").and_then(|p| read_each(&p, rail));
     f.finish("an output");
     Some(Output {
         winding: usize::try_from(winding?).ok()?,
@@ -186,7 +186,7 @@ fn output(place: &Place<'_>) -> Option<Output> {
 }
 
 /// Reads the name of a circuit.
-pub(super) fn circuit(place: &Place<'_>) -> Option<Circuit> {
+pub fn circuit(place: &Place<'_>) -> Option<Circuit> {
     let names: Vec<&'static str> = Circuit::ALL.iter().map(|c| c.name()).collect();
     let word = place.word(&names)?;
     Circuit::ALL.into_iter().find(|c| c.name() == word)
@@ -216,7 +216,7 @@ fn optional_capacitor(f: &mut Fields<'_>, field: &'static str) -> Option<Option<
 }
 
 /// Reads a diode; also an assumption of a need.
-pub(super) fn diode(place: &Place<'_>) -> Option<Diode> {
+pub fn diode(place: &Place<'_>) -> Option<Diode> {
     let mut f = place.object()?;
     no_part(&mut f);
     if let Some(points) = f.optional("points") {
@@ -289,7 +289,7 @@ fn rail(place: &Place<'_>) -> Option<Rail> {
     let mut f = place.object()?;
     let filter = match f.optional("filter") {
         None => Some(Vec::new()),
-        Some(place) => each(&place, section),
+        Some(place) => read_each(&place, section),
     };
     let load = f.required("load").and_then(|p| load(&p));
     f.finish("a rail");
@@ -326,7 +326,7 @@ fn series(place: &Place<'_>) -> Option<Series> {
 }
 
 /// Reads a load; also part of a need.
-pub(super) fn load(place: &Place<'_>) -> Option<Load> {
+pub fn load(place: &Place<'_>) -> Option<Load> {
     let mut f = place.object()?;
     let kind = f.required("kind");
     if let Some(place) = kind.as_ref().filter(|p| p.text() == Some("power")) {
@@ -357,7 +357,7 @@ fn regulator(f: &mut Fields<'_>) -> Option<Load> {
 }
 
 /// Reads the surroundings; also part of a need.
-pub(super) fn surroundings(place: &Place<'_>) -> Option<Surroundings> {
+pub fn surroundings(place: &Place<'_>) -> Option<Surroundings> {
     let mut f = place.object()?;
     let ambient = f.band_or("ambient", D::Temperature, Surroundings::default().ambient);
     f.finish("the surroundings");

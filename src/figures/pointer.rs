@@ -1,9 +1,29 @@
 //! Figures by their JSON Pointer.
 
 use super::catalogue::{CATALOGUE, Figure};
-use super::{Figures, OutputFigures};
+use super::{CapacitorFigures, ChokeFigures, DiodeFigures, Figures, OutputFigures, RailFigures};
+use crate::bounds::LINE_ORDERS;
+use crate::network::Network;
 
 impl Figures {
+    /// Figures of the shape that a network's have, all zero: for their pointers.
+    #[must_use]
+    pub fn shaped(network: &Network) -> Self {
+        let outputs = network.probes.outputs.iter().map(|output| OutputFigures {
+            rails: vec![RailFigures::default(); output.rails.len()],
+            diodes: vec![DiodeFigures::default(); output.diodes.len()],
+            capacitors: vec![CapacitorFigures::default(); output.capacitors.len()],
+            chokes: vec![ChokeFigures::default(); output.chokes.len()],
+            ..OutputFigures::default()
+        });
+        let mut figures = Self {
+            outputs: outputs.collect(),
+            ..Self::default()
+        };
+        figures.line.harmonics = vec![0.0; LINE_ORDERS];
+        figures
+    }
+
     /// Every figure's value, always in the same order for the same supply.
     #[must_use]
     pub fn values(&self) -> Vec<f64> {

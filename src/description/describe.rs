@@ -103,7 +103,7 @@ fn rectifier(rectifier: &Rectifier) -> form::Rectifier {
 
 /// A circuit's published name.
 #[must_use]
-pub(crate) fn circuit(circuit: Circuit) -> form::Circuit {
+pub fn circuit(circuit: Circuit) -> form::Circuit {
     match circuit {
         Circuit::HalfWave => form::Circuit::HalfWave,
         Circuit::Bridge => form::Circuit::Bridge,
@@ -116,7 +116,9 @@ pub(crate) fn circuit(circuit: Circuit) -> form::Circuit {
     }
 }
 
-fn diode(diode: &Diode) -> form::Diode {
+/// A diode in its published form.
+#[must_use]
+pub fn diode(diode: &Diode) -> form::Diode {
     let ratings = &diode.ratings;
     form::Diode {
         threshold_voltage: q::Voltage::of(&diode.threshold_voltage),
