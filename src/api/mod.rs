@@ -11,6 +11,7 @@ pub mod extract;
 pub mod figures;
 mod guard;
 pub mod health;
+mod negotiate;
 pub mod openapi;
 pub mod operating_point;
 pub mod policies;

@@ -4,13 +4,17 @@ use super::AppState;
 use super::answer::{self, Figures};
 use super::examples;
 use super::extract::Body;
-use super::problem::{BodyErrors, Problem};
+use super::negotiate::{self, Known};
+use super::problem::{BodyErrors, Kind, Problem};
 use crate::app;
 use crate::description::fields::{Faults, Place};
 use crate::description::{form, json::Json, request};
 use crate::figures::Waveforms as PlainWaveforms;
+use crate::plot;
 use crate::supply::{Fault, Load, Supply};
 use axum::extract::State;
+use axum::http::{HeaderMap, header};
+use axum::response::{IntoResponse, Response};
 use serde::Serialize;
 use std::collections::BTreeMap;
 use utoipa::ToSchema;
@@ -21,6 +25,17 @@ use utoipa_axum::routes;
 const POINTS_MINIMUM: u64 = 2;
 /// Points of a waveform where their number is left out.
 const POINTS_DEFAULT: u64 = 400;
+
+/// A representation of the answer.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Format {
+    /// The figures.
+    Json,
+    /// One cycle as a plot.
+    Plot,
+}
+
+const FORMATS: [Known<Format>; 2] = [(Format::Json, "application", "json"), (Format::Plot, "image", "svg+xml")];
 
 /// The resource's routes.
 pub(super) fn router() -> OpenApiRouter<AppState> {
@@ -137,20 +152,45 @@ pub struct OperatingPointAnswer {
 /// Operating point
 ///
 /// Solves the periodic steady state at one choice within every band and returns all figures: integrals and located extremes of the
-/// exact solution, no samples.
+/// exact solution, no samples. With `Accept: image/svg+xml` it returns one cycle as a plot instead.
 #[utoipa::path(
     post, path = "/v1/operating-point", operation_id = "solveOperatingPoint", tag = "supply",
     request_body(
         content = OperatingPointRequest, description = "A supply and a point within its bands.",
         example = json!({"supply": examples::supply(), "at": {"/line/voltage": "low"}})
     ),
-    responses((status = 200, description = "The figures.", body = OperatingPointAnswer), BodyErrors)
+    responses(
+        (status = 200, description = "The figures; or one cycle as a plot.", content(
+            (OperatingPointAnswer = "application/json"),
+            (String = "image/svg+xml")
+        )),
+        (status = 406, description = "None of the acceptable representations exists.", body = Problem, content_type = "application/problem+json"),
+        BodyErrors
+    )
 )]
-async fn operating_point(State(state): State<AppState>, body: Body) -> Result<axum::Json<OperatingPointAnswer>, Problem> {
+async fn operating_point(State(state): State<AppState>, headers: HeaderMap, body: Body) -> Result<Response, Problem> {
+    let Some(format) = negotiate::choose(&headers, &FORMATS) else {
+        let detail = "an operating point comes as application/json or image/svg+xml";
+        return Err(Problem::new(Kind::NOT_ACCEPTABLE, detail));
+    };
     let most = state.app.limits.waveform_points_maximum as u64;
     let (supply, points) = read(&body.0, most).map_err(Problem::faulty)?;
+    let points = points.or((format == Format::Plot).then_some(POINTS_DEFAULT as usize));
     let point = state.app.operating_point(supply.clone(), points).await?;
-    Ok(axum::Json(answer(&supply, point)))
+    match (format, &point.waveforms) {
+        (Format::Plot, Some(waves)) => plotted(&supply, waves),
+        _ => Ok(axum::Json(answer(&supply, point)).into_response()),
+    }
+}
+
+fn plotted(supply: &Supply, waves: &PlainWaveforms) -> Result<Response, Problem> {
+    let name = supply.name().unwrap_or("Mains input stage");
+    let title = format!("{name}: rail voltage, diode current and line current over one cycle");
+    let svg = plot::waveforms(&title, waves).map_err(|error| {
+        tracing::error!(error = %error, "a plot failed");
+        Problem::new(Kind::INTERNAL, "the plot could not be drawn")
+    })?;
+    Ok(([(header::CONTENT_TYPE, "image/svg+xml")], svg).into_response())
 }
 
 fn read(json: &Json, points_maximum: u64) -> Result<(Supply, Option<usize>), Vec<Fault>> {

@@ -1,12 +1,12 @@
 //! `POST /v1/sweep`: a table of operating points, streamed as JSON, CSV or lines of JSON.
 
-mod negotiate;
 mod read;
 mod stream;
 
 use super::AppState;
 use super::examples;
 use super::extract::Body;
+use super::negotiate::{self, Known};
 use super::problem::{BodyErrors, Kind, Problem};
 use crate::description::form;
 use axum::extract::State;
@@ -16,6 +16,23 @@ use serde::Serialize;
 use utoipa::ToSchema;
 use utoipa_axum::router::OpenApiRouter;
 use utoipa_axum::routes;
+
+/// A representation of the table.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Format {
+    /// One JSON object.
+    Json,
+    /// CSV by RFC 4180.
+    Csv,
+    /// A JSON text a line.
+    Lines,
+}
+
+const FORMATS: [Known<Format>; 3] = [
+    (Format::Json, "application", "json"),
+    (Format::Csv, "text", "csv"),
+    (Format::Lines, "application", "x-ndjson"),
+];
 
 /// The resource's routes.
 pub(super) fn router() -> OpenApiRouter<AppState> {
@@ -137,8 +154,9 @@ pub struct SweepTable {
     )
 )]
 async fn sweep(State(state): State<AppState>, headers: HeaderMap, body: Body) -> Result<Response, Problem> {
-    let Some(format) = negotiate::format(&headers) else {
-        return Err(Problem::new(Kind::NOT_ACCEPTABLE, format!("a sweep comes as {}", negotiate::LIST)));
+    let Some(format) = negotiate::choose(&headers, &FORMATS) else {
+        let detail = "a sweep comes as application/json, text/csv or application/x-ndjson";
+        return Err(Problem::new(Kind::NOT_ACCEPTABLE, detail));
     };
     let request = read::read(&body.0, state.app.limits).map_err(Problem::faulty)?;
     let request = read::columns(&state, request)?;

@@ -34,7 +34,8 @@ pub enum BandError {
     Disordered,
 }
 
-/// A quantity that lies between a low and a high end, with a nominal value in between. Always finite, always ordered.
+/// A quantity that lies between a low and a high end, with a nominal value in between. Always finite, always ordered, and
+/// a zero in it is never a negative zero.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Band {
     low: f64,
@@ -54,7 +55,8 @@ impl Band {
         if !(low.is_finite() && nominal.is_finite() && high.is_finite()) {
             Err(BandError::NotFinite)
         } else if low <= nominal && nominal <= high {
-            Ok(Self { low, nominal, high })
+            // Adding zero turns a negative zero into a plain one, and nothing else.
+            Ok(Self { low: low + 0.0, nominal: nominal + 0.0, high: high + 0.0 })
         } else {
             Err(BandError::Disordered)
         }
@@ -75,6 +77,7 @@ impl Band {
     #[must_use]
     pub const fn exactly(value: f64) -> Self {
         assert!(value.is_finite(), "a quantity is finite");
+        let value = value + 0.0;
         Self {
             low: value,
             nominal: value,

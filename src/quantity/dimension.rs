@@ -33,29 +33,46 @@ pub enum Dimension {
     Life,
     /// Joules.
     Energy,
+    /// Coulombs.
+    Charge,
+    /// Ampere squared seconds: what a fuse lets through, what a diode withstands.
+    JouleIntegral,
+    /// Metres.
+    Length,
 }
 
 /// A unit as it may be written, without its prefix.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(super) struct Unit {
     pub(super) text: &'static str,
-    /// Decimal exponent of the unit in base units.
-    pub(super) exponent: i32,
-    /// Whether SI prefixes may stand before it.
-    pub(super) prefixed: bool,
+    pub(super) scale: Scale,
+    /// Decimal exponent of the largest SI prefix that may stand before it; none may where it is left out.
+    pub(super) prefix_maximum: Option<i32>,
 }
 
-const fn unit(text: &'static str, exponent: i32, prefixed: bool) -> Unit {
-    Unit {
-        text,
-        exponent,
-        prefixed,
-    }
+/// What a unit is in base units: a whole number times a power of ten.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) struct Scale {
+    pub(super) factor: u32,
+    pub(super) exponent: i32,
+}
+
+const GIGA: i32 = 9;
+const TERA: i32 = 12;
+
+/// A base unit with prefixes up to one.
+const fn prefixed(text: &'static str, maximum: i32) -> Unit {
+    Unit { text, scale: Scale { factor: 1, exponent: 0 }, prefix_maximum: Some(maximum) }
+}
+
+/// A unit that takes no prefix.
+const fn bare(text: &'static str, factor: u32, exponent: i32) -> Unit {
+    Unit { text, scale: Scale { factor, exponent }, prefix_maximum: None }
 }
 
 impl Dimension {
     /// Every dimension.
-    pub const ALL: [Self; 15] = [
+    pub const ALL: [Self; 18] = [
         Self::Voltage,
         Self::Current,
         Self::Power,
@@ -71,31 +88,52 @@ impl Dimension {
         Self::Time,
         Self::Life,
         Self::Energy,
+        Self::Charge,
+        Self::JouleIntegral,
+        Self::Length,
     ];
 
     /// The units it may be written in; the first is the one it is written back in.
     pub(super) fn units(self) -> &'static [Unit] {
         match self {
-            Self::Voltage => const { &[unit("V", 0, true)] },
-            Self::Current => const { &[unit("A", 0, true)] },
-            Self::Power => const { &[unit("W", 0, true)] },
-            Self::ApparentPower => const { &[unit("VA", 0, true)] },
+            Self::Voltage => const { &[prefixed("V", GIGA)] },
+            Self::Current => const { &[prefixed("A", GIGA)] },
+            Self::Power => const { &[prefixed("W", GIGA)] },
+            Self::ApparentPower => const { &[prefixed("VA", GIGA)] },
+            // Insulation is measured in teraohms; nothing else here grows so large.
             Self::Resistance => {
-                const { &[unit("ohm", 0, true), unit("Ohm", 0, true), unit("\u{3a9}", 0, true), unit("\u{2126}", 0, true)] }
+                const { &[prefixed("ohm", TERA), prefixed("Ohm", TERA), prefixed("\u{3a9}", TERA), prefixed("\u{2126}", TERA)] }
             }
-            Self::Inductance => const { &[unit("H", 0, true)] },
-            Self::Capacitance => const { &[unit("F", 0, true)] },
-            Self::Frequency => const { &[unit("Hz", 0, true)] },
-            Self::Ratio => const { &[unit("%", -2, false)] },
-            Self::Angle => const { &[unit("deg", 0, false), unit("\u{b0}", 0, false)] },
+            Self::Inductance => const { &[prefixed("H", GIGA)] },
+            Self::Capacitance => const { &[prefixed("F", GIGA)] },
+            Self::Frequency => const { &[prefixed("Hz", GIGA)] },
+            Self::Ratio => const { &[bare("%", 1, -2)] },
+            Self::Angle => const { &[bare("deg", 1, 0), bare("\u{b0}", 1, 0)] },
             Self::Temperature => {
-                const { &[unit("degC", 0, false), unit("\u{b0}C", 0, false), unit("\u{2103}", 0, false)] }
+                const { &[bare("degC", 1, 0), bare("\u{b0}C", 1, 0), bare("\u{2103}", 1, 0)] }
             }
-            Self::TemperatureDifference => const { &[unit("K", 0, false)] },
-            Self::Time => const { &[unit("s", 0, true)] },
-            Self::Life => const { &[unit("h", 0, false)] },
-            Self::Energy => const { &[unit("J", 0, true)] },
+            Self::TemperatureDifference => const { &[bare("K", 1, 0)] },
+            Self::Time => const { &[prefixed("s", GIGA), bare("min", 60, 0), bare("h", 3600, 0)] },
+            Self::Life => const { &[bare("h", 1, 0)] },
+            Self::Energy => const { &[prefixed("J", GIGA)] },
+            Self::Charge => const { &[prefixed("C", GIGA)] },
+            // No prefixes: a prefix before a power is raised with it, and few who write kA2s mean a million.
+            Self::JouleIntegral => const { &[bare("A2s", 1, 0), bare("A\u{b2}s", 1, 0)] },
+            Self::Length => const { &[prefixed("m", GIGA)] },
         }
+    }
+
+    /// What a unit with its prefix is in base units; nothing where it is no unit of this dimension.
+    pub(super) fn scale_of(self, word: &str) -> Option<Scale> {
+        self.units().iter().find_map(|unit| {
+            let prefix = word.strip_suffix(unit.text)?;
+            if prefix.is_empty() {
+                return Some(unit.scale);
+            }
+            let &(_, exponent) = PREFIXES.iter().find(|(text, _)| *text == prefix)?;
+            (exponent <= unit.prefix_maximum?)
+                .then_some(Scale { factor: unit.scale.factor, exponent: unit.scale.exponent + exponent })
+        })
     }
 
     /// The unit it is written back in, for example `"V"`, `"ohm"`, `"%"`, `"degC"`.
@@ -123,7 +161,16 @@ impl Dimension {
             Self::Time => "time",
             Self::Life => "life",
             Self::Energy => "energy",
+            Self::Charge => "charge",
+            Self::JouleIntegral => "joule integral",
+            Self::Length => "length",
         }
+    }
+
+    /// The name with its article, for sentences: `"an apparent power"`.
+    pub(super) fn named(self) -> String {
+        let article = if self.name().starts_with(['a', 'e', 'i']) { "an" } else { "a" };
+        format!("{article} {}", self.name())
     }
 
     /// A quantity of this dimension as one would write it.
@@ -145,6 +192,9 @@ impl Dimension {
             Self::Time => "20 ms",
             Self::Life => "20000 h",
             Self::Energy => "30 J",
+            Self::Charge => "40 uC",
+            Self::JouleIntegral => "120 A2s",
+            Self::Length => "25 mm",
         }
     }
 }

@@ -1,11 +1,12 @@
-//! Decimal numbers in text, kept as digits and exponent so that a prefix shifts the point without rounding.
+//! Decimal numbers kept exactly, so that a prefix, a minute or a percentage is worked in before the one rounding to a double.
 
-/// A decimal number at the beginning of a text.
+/// A decimal number: sign, digits and a power of ten. Nothing is lost in its arithmetic.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub(super) struct Decimal {
-    /// Sign and digits with at most one point.
-    mantissa: String,
-    /// Power of ten.
+    negative: bool,
+    /// Digits 0 to 9, the least significant first, the most significant not zero; none for zero.
+    digits: Vec<u8>,
+    /// Power of ten of the least significant digit.
     exponent: i32,
 }
 
@@ -14,8 +15,12 @@ pub(super) struct Decimal {
 pub(super) enum DecimalError {
     /// There is none at this place.
     Missing,
-    /// Too large or too small for a double.
-    OutOfRange,
+    /// It has more than one point.
+    Points,
+    /// Beyond the largest double.
+    TooLarge,
+    /// Not zero, yet nearer to zero than the doubles that carry all their digits.
+    TooSmall,
 }
 
 /// Digits of an exponent that are read: more can only over- or underflow.
@@ -24,64 +29,147 @@ const EXPONENT_DIGITS: usize = 4;
 impl Decimal {
     /// Takes a number off the beginning of `text`; the rest.
     pub(super) fn take(text: &str) -> Result<(Self, &str), DecimalError> {
-        let (sign, unsigned) = take_sign(text);
-        let body = unsigned
-            .find(|c: char| !(c.is_ascii_digit() || c == '.'))
-            .unwrap_or(unsigned.len());
-        let digits = &unsigned[..body];
-        if !digits.contains(|c: char| c.is_ascii_digit()) || digits.matches('.').count() > 1 {
+        let (negative, unsigned) = take_sign(text);
+        let is_part = |c: char| c.is_ascii_digit() || c == '.';
+        let body = unsigned.find(|c| !is_part(c)).unwrap_or(unsigned.len());
+        let (whole, fraction) = unsigned[..body].split_once('.').unwrap_or((&unsigned[..body], ""));
+        if whole.is_empty() && fraction.is_empty() {
             return Err(DecimalError::Missing);
         }
-        let (exponent, rest) = take_exponent(&unsigned[body..])?;
-        let mantissa = format!("{sign}{digits}");
-        Ok((Self { mantissa, exponent }, rest))
-    }
-
-    /// A number given by its digits around a letter that stands for the point: `4k7`.
-    pub(super) fn around(whole: &str, fraction: &str) -> Self {
-        Self {
-            mantissa: format!("{whole}.{fraction}0"),
-            exponent: 0,
+        if fraction.contains('.') {
+            return Err(DecimalError::Points);
         }
+        let mut number = Self::around(whole, fraction);
+        number.negative = negative && !number.is_zero();
+        let (exponent, rest) = take_exponent(&unsigned[body..], number.is_zero())?;
+        Ok((number.scaled(1, exponent), rest))
     }
 
-    /// Its value times a power of ten, rounded once.
-    pub(super) fn value(&self, shift: i32) -> Result<f64, DecimalError> {
-        let text = format!("{}e{}", self.mantissa, self.exponent + shift);
-        let value: f64 = text.parse().map_err(|_| DecimalError::Missing)?;
-        let zero = !self.mantissa.contains(|c: char| ('1'..='9').contains(&c));
-        if zero {
-            Ok(0.0)
+    /// The number whose point stands between two runs of ASCII digits.
+    pub(super) fn around(whole: &str, fraction: &str) -> Self {
+        let digits = whole.bytes().chain(fraction.bytes()).rev().map(|byte| i64::from(byte - b'0'));
+        Self::carried(digits.collect(), -(fraction.len() as i32))
+    }
+
+    /// Its value, rounded once to the nearest double.
+    pub(super) fn value(&self) -> Result<f64, DecimalError> {
+        if self.is_zero() {
+            return Ok(0.0);
+        }
+        let sign = if self.negative { "-" } else { "" };
+        let digits: String = self.digits.iter().rev().map(|digit| char::from(b'0' + digit)).collect();
+        let value: f64 = format!("{sign}{digits}e{}", self.exponent).parse().map_err(|_| DecimalError::Missing)?;
+        if value.is_infinite() {
+            Err(DecimalError::TooLarge)
         } else if value.is_normal() {
             Ok(value)
         } else {
-            Err(DecimalError::OutOfRange)
+            Err(DecimalError::TooSmall)
         }
+    }
+
+    /// Times a whole number and a power of ten.
+    pub(super) fn scaled(&self, factor: u32, exponent: i32) -> Self {
+        let digits = self.digits.iter().map(|&digit| i64::from(digit) * i64::from(factor)).collect();
+        let product = Self::carried(digits, self.exponent + exponent);
+        Self { negative: self.negative && !product.is_zero(), ..product }
+    }
+
+    /// The product, without its sign.
+    pub(super) fn magnitude_times(&self, other: &Self) -> Self {
+        let mut sums = vec![0_i64; self.digits.len() + other.digits.len()];
+        for (i, &a) in self.digits.iter().enumerate() {
+            for (j, &b) in other.digits.iter().enumerate() {
+                sums[i + j] += i64::from(a) * i64::from(b);
+            }
+        }
+        Self::carried(sums, self.exponent + other.exponent)
+    }
+
+    pub(super) fn plus(&self, other: &Self) -> Self {
+        self.combined(other, 1)
+    }
+
+    pub(super) fn minus(&self, other: &Self) -> Self {
+        self.combined(other, -1)
+    }
+
+    fn is_zero(&self) -> bool {
+        self.digits.is_empty()
+    }
+
+    fn combined(&self, other: &Self, sign: i64) -> Self {
+        if self.is_zero() || other.is_zero() {
+            let rest = if other.is_zero() { self.clone() } else { other.clone() };
+            let flipped = other.is_zero() || sign > 0;
+            return Self { negative: (rest.negative == flipped) && !rest.is_zero(), ..rest };
+        }
+        let exponent = self.exponent.min(other.exponent);
+        let offset = |number: &Self| (number.exponent - exponent).unsigned_abs() as usize;
+        let length = (self.digits.len() + offset(self)).max(other.digits.len() + offset(other));
+        let mut sums = vec![0_i64; length];
+        for (number, sign) in [(self, 1), (other, sign)] {
+            let sign = if number.negative { -sign } else { sign };
+            for (place, &digit) in number.digits.iter().enumerate() {
+                sums[place + offset(number)] += sign * i64::from(digit);
+            }
+        }
+        Self::carried(sums, exponent)
+    }
+
+    /// From sums a decimal place, which may be of any size and sign.
+    fn carried(sums: Vec<i64>, exponent: i32) -> Self {
+        let mut digits = Vec::with_capacity(sums.len() + 4);
+        let mut carry = 0_i64;
+        for sum in &sums {
+            let total = sum + carry;
+            digits.push(total.rem_euclid(10) as u8);
+            carry = total.div_euclid(10);
+        }
+        if carry < 0 {
+            let opposite = Self::carried(sums.into_iter().map(|sum| -sum).collect(), exponent);
+            return Self { negative: true, ..opposite };
+        }
+        while carry > 0 {
+            digits.push((carry % 10) as u8);
+            carry /= 10;
+        }
+        while digits.last() == Some(&0) {
+            digits.pop();
+        }
+        Self { negative: false, digits, exponent }
     }
 }
 
-fn take_sign(text: &str) -> (&'static str, &str) {
-    for (spelling, sign) in [("-", "-"), ("\u{2212}", "-"), ("+", "")] {
+/// A sign off the beginning, a hyphen or a true minus sign alike: whether it is a minus; the rest.
+pub(super) fn take_sign(text: &str) -> (bool, &str) {
+    for (spelling, negative) in [('-', true), ('\u{2212}', true), ('+', false)] {
         if let Some(rest) = text.strip_prefix(spelling) {
-            return (sign, rest);
+            return (negative, rest);
         }
     }
-    ("", text)
+    (false, text)
 }
 
 /// An exponent such as `e-05`; nothing where the letter is not followed by a whole number.
-fn take_exponent(text: &str) -> Result<(i32, &str), DecimalError> {
+fn take_exponent(text: &str, of_zero: bool) -> Result<(i32, &str), DecimalError> {
     let Some(after) = text.strip_prefix(['e', 'E']) else {
         return Ok((0, text));
     };
-    let (sign, digits) = take_sign(after);
+    let (negative, digits) = take_sign(after);
     let length = digits.find(|c: char| !c.is_ascii_digit()).unwrap_or(digits.len());
     if length == 0 {
         return Ok((0, text));
     }
-    if length > EXPONENT_DIGITS {
-        return Err(DecimalError::OutOfRange);
+    let (digits, rest) = digits.split_at(length);
+    let digits = digits.trim_start_matches('0');
+    if of_zero || digits.is_empty() {
+        return Ok((0, rest));
     }
-    let value: i32 = digits[..length].parse().map_err(|_| DecimalError::OutOfRange)?;
-    Ok((if sign == "-" { -value } else { value }, &digits[length..]))
+    let beyond = if negative { DecimalError::TooSmall } else { DecimalError::TooLarge };
+    if digits.len() > EXPONENT_DIGITS {
+        return Err(beyond);
+    }
+    let value: i32 = digits.parse().map_err(|_| beyond)?;
+    Ok((if negative { -value } else { value }, rest))
 }

@@ -225,15 +225,21 @@ fn by_signs<E>(
     Ok(survey)
 }
 
+/// The point with the lowest value; of points that are equal within rounding the first, a corner rather than a point inside.
 fn lowest(survey: &Survey, figure: usize) -> usize {
-    let value = |index: &usize| survey.points[*index].1[figure];
-    (0..survey.points.len()).min_by(|a, b| value(a).total_cmp(&value(b))).unwrap_or(0)
+    best(survey, figure, 1.0)
 }
 
+/// The point with the highest value, likewise.
 fn highest(survey: &Survey, figure: usize) -> usize {
-    let value = |index: &usize| survey.points[*index].1[figure];
-    // The first of equals, as for the lowest.
-    (0..survey.points.len()).rev().max_by(|a, b| value(a).total_cmp(&value(b))).unwrap_or(0)
+    best(survey, figure, -1.0)
+}
+
+fn best(survey: &Survey, figure: usize, sign: f64) -> usize {
+    let values = || survey.points.iter().map(|(_, figures)| sign * figures[figure]);
+    let least = values().fold(f64::INFINITY, f64::min);
+    let equal = least + FLAT * least.abs();
+    values().position(|value| value <= equal).unwrap_or(0)
 }
 
 fn range(corners: &Corners<'_>, survey: &Survey, figure: usize, nominal: f64, known_by: KnownBy) -> Range {

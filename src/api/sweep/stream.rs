@@ -1,7 +1,6 @@
 //! The table as a stream: never more of it in memory than a few blocks.
 
-use super::SweepColumn;
-use super::negotiate::Format;
+use super::{Format, SweepColumn};
 use crate::app::{AppError, Rows};
 use axum::body::Body;
 use axum::http::header;
