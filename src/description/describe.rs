@@ -17,7 +17,7 @@ pub fn describe(supply: &Supply) -> form::Supply {
         transformer: supply.transformer().map(transformer),
         outputs: supply.outputs().iter().map(output).collect(),
         surroundings: (*supply.surroundings() != Surroundings::default()).then(|| form::Surroundings {
-            ambient: q::Temperature::of(&supply.surroundings().ambient),
+            ambient: Some(q::Temperature::of(&supply.surroundings().ambient)),
         }),
     }
 }

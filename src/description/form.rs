@@ -343,6 +343,8 @@ pub enum Load {
 #[derive(Clone, Debug, PartialEq, Serialize, ToSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Surroundings {
-    /// Air temperature in degrees Celsius; kept, not yet used.
-    pub ambient: Temperature,
+    /// Air temperature in degrees Celsius; kept, not yet used. 25 degC where left out.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub ambient: Option<Temperature>,
 }

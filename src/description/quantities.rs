@@ -7,8 +7,8 @@ use utoipa::openapi::schema::{ObjectBuilder, Schema, Type};
 use utoipa::openapi::{RefOr, schema::SchemaType};
 use utoipa::{PartialSchema, ToSchema};
 
-/// A number as it is read: no more digits than a double holds, and an exponent that keeps it finite.
-const NUMBER: &str = r"[+-]?(?:[0-9]{1,9}(?:\.[0-9]{0,9})?|\.[0-9]{1,9})(?:[eE][+-]?[0-9]{1,2})?";
+/// A number as it is read: a few more digits than a double holds, and an exponent that keeps it finite.
+const NUMBER: &str = r"[+-]?(?:[0-9]{1,18}(?:\.[0-9]{0,20})?|\.[0-9]{1,20})(?:[eE][+-]?[0-9]{1,2})?";
 
 struct Form {
     dimension: Dimension,
@@ -26,9 +26,9 @@ fn schema(form: &Form) -> RefOr<Schema> {
         _ => "",
     };
     let width = match form.dimension {
-        Dimension::Temperature => "[0-9]{1,3} ?(?:K|%)".to_owned(),
-        Dimension::Ratio => "[0-9]{1,2}(?:\\.[0-9]{1,6})? ?%".to_owned(),
-        _ => format!("(?:[0-9]{{1,2}}(?:\\.[0-9]{{1,6}})? ?%|[0-9]{{1,4}}(?:\\.[0-9]{{1,6}})? ?{})", form.units),
+        Dimension::Temperature => "[0-9]{1,3}(?:\\.[0-9]{1,20})? ?(?:K|%)".to_owned(),
+        Dimension::Ratio => "[0-9]{1,3}(?:\\.[0-9]{1,20})? ?%".to_owned(),
+        _ => format!("(?:[0-9]{{1,3}}(?:\\.[0-9]{{1,20}})? ?%|[0-9]{{1,9}}(?:\\.[0-9]{{1,20}})? ?{})", form.units),
     };
     let tolerance = format!("(?:\u{b1}|\\+/-) ?{width}");
     let sided = format!("-{width} ?/ ?\\+{width}");

@@ -56,7 +56,11 @@ impl Band {
             Err(BandError::NotFinite)
         } else if low <= nominal && nominal <= high {
             // Adding zero turns a negative zero into a plain one, and nothing else.
-            Ok(Self { low: low + 0.0, nominal: nominal + 0.0, high: high + 0.0 })
+            Ok(Self {
+                low: low + 0.0,
+                nominal: nominal + 0.0,
+                high: high + 0.0,
+            })
         } else {
             Err(BandError::Disordered)
         }

@@ -62,12 +62,23 @@ const TERA: i32 = 12;
 
 /// A base unit with prefixes up to one.
 const fn prefixed(text: &'static str, maximum: i32) -> Unit {
-    Unit { text, scale: Scale { factor: 1, exponent: 0 }, prefix_maximum: Some(maximum) }
+    Unit {
+        text,
+        scale: Scale {
+            factor: 1,
+            exponent: 0,
+        },
+        prefix_maximum: Some(maximum),
+    }
 }
 
 /// A unit that takes no prefix.
 const fn bare(text: &'static str, factor: u32, exponent: i32) -> Unit {
-    Unit { text, scale: Scale { factor, exponent }, prefix_maximum: None }
+    Unit {
+        text,
+        scale: Scale { factor, exponent },
+        prefix_maximum: None,
+    }
 }
 
 impl Dimension {
@@ -102,7 +113,14 @@ impl Dimension {
             Self::ApparentPower => const { &[prefixed("VA", GIGA)] },
             // Insulation is measured in teraohms; nothing else here grows so large.
             Self::Resistance => {
-                const { &[prefixed("ohm", TERA), prefixed("Ohm", TERA), prefixed("\u{3a9}", TERA), prefixed("\u{2126}", TERA)] }
+                const {
+                    &[
+                        prefixed("ohm", TERA),
+                        prefixed("Ohm", TERA),
+                        prefixed("\u{3a9}", TERA),
+                        prefixed("\u{2126}", TERA),
+                    ]
+                }
             }
             Self::Inductance => const { &[prefixed("H", GIGA)] },
             Self::Capacitance => const { &[prefixed("F", GIGA)] },
@@ -110,7 +128,13 @@ impl Dimension {
             Self::Ratio => const { &[bare("%", 1, -2)] },
             Self::Angle => const { &[bare("deg", 1, 0), bare("\u{b0}", 1, 0)] },
             Self::Temperature => {
-                const { &[bare("degC", 1, 0), bare("\u{b0}C", 1, 0), bare("\u{2103}", 1, 0)] }
+                const {
+                    &[
+                        bare("degC", 1, 0),
+                        bare("\u{b0}C", 1, 0),
+                        bare("\u{2103}", 1, 0),
+                    ]
+                }
             }
             Self::TemperatureDifference => const { &[bare("K", 1, 0)] },
             Self::Time => const { &[prefixed("s", GIGA), bare("min", 60, 0), bare("h", 3600, 0)] },
@@ -131,8 +155,10 @@ impl Dimension {
                 return Some(unit.scale);
             }
             let &(_, exponent) = PREFIXES.iter().find(|(text, _)| *text == prefix)?;
-            (exponent <= unit.prefix_maximum?)
-                .then_some(Scale { factor: unit.scale.factor, exponent: unit.scale.exponent + exponent })
+            (exponent <= unit.prefix_maximum?).then_some(Scale {
+                factor: unit.scale.factor,
+                exponent: unit.scale.exponent + exponent,
+            })
         })
     }
 
@@ -169,7 +195,11 @@ impl Dimension {
 
     /// The name with its article, for sentences: `"an apparent power"`.
     pub(super) fn named(self) -> String {
-        let article = if self.name().starts_with(['a', 'e', 'i']) { "an" } else { "a" };
+        let article = if self.name().starts_with(['a', 'e', 'i']) {
+            "an"
+        } else {
+            "a"
+        };
         format!("{article} {}", self.name())
     }
 

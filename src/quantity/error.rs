@@ -57,7 +57,9 @@ pub enum QuantityError {
         text: String,
     },
     /// Digits in groups, or a comma that may be meant to group them.
-    #[error("{text:?} has separators between its digits; write the digits together and one decimal point at most, for example \"4700\" or \"4.7\"")]
+    #[error(
+        "{text:?} has separators between its digits; write the digits together and one decimal point at most, for example \"4700\" or \"4.7\""
+    )]
     Separators {
         /// The text.
         text: String,
@@ -95,7 +97,9 @@ pub enum QuantityError {
         text: String,
     },
     /// A tolerance that cannot be read.
-    #[error("{text:?} is not a tolerance; write \"\u{b1}20 %\", \"+/-20 %\", \"-10 %/+50 %\", \"\u{b1}10 V\" or \"(0.05 A to 1.4 A)\" with a unit on each number")]
+    #[error(
+        "{text:?} is not a tolerance; write \"\u{b1}20 %\", \"+/-20 %\", \"-10 %/+50 %\", \"\u{b1}10 V\" or \"(0.05 A to 1.4 A)\" with a unit on each number"
+    )]
     Tolerance {
         /// The text behind the nominal value.
         text: String,
@@ -107,7 +111,9 @@ pub enum QuantityError {
         text: String,
     },
     /// Ends that do not enclose the nominal value.
-    #[error("the nominal value lies outside {text:?}; write ends that enclose it: low <= nominal <= high")]
+    #[error(
+        "the nominal value lies outside {text:?}; write ends that enclose it: low <= nominal <= high"
+    )]
     NominalOutside {
         /// The ends as written.
         text: String,

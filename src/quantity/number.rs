@@ -32,7 +32,9 @@ impl Decimal {
         let (negative, unsigned) = take_sign(text);
         let is_part = |c: char| c.is_ascii_digit() || c == '.';
         let body = unsigned.find(|c| !is_part(c)).unwrap_or(unsigned.len());
-        let (whole, fraction) = unsigned[..body].split_once('.').unwrap_or((&unsigned[..body], ""));
+        let (whole, fraction) = unsigned[..body]
+            .split_once('.')
+            .unwrap_or((&unsigned[..body], ""));
         if whole.is_empty() && fraction.is_empty() {
             return Err(DecimalError::Missing);
         }
@@ -47,7 +49,11 @@ impl Decimal {
 
     /// The number whose point stands between two runs of ASCII digits.
     pub(super) fn around(whole: &str, fraction: &str) -> Self {
-        let digits = whole.bytes().chain(fraction.bytes()).rev().map(|byte| i64::from(byte - b'0'));
+        let digits = whole
+            .bytes()
+            .chain(fraction.bytes())
+            .rev()
+            .map(|byte| i64::from(byte - b'0'));
         Self::carried(digits.collect(), -(fraction.len() as i32))
     }
 
@@ -57,8 +63,15 @@ impl Decimal {
             return Ok(0.0);
         }
         let sign = if self.negative { "-" } else { "" };
-        let digits: String = self.digits.iter().rev().map(|digit| char::from(b'0' + digit)).collect();
-        let value: f64 = format!("{sign}{digits}e{}", self.exponent).parse().map_err(|_| DecimalError::Missing)?;
+        let digits: String = self
+            .digits
+            .iter()
+            .rev()
+            .map(|digit| char::from(b'0' + digit))
+            .collect();
+        let value: f64 = format!("{sign}{digits}e{}", self.exponent)
+            .parse()
+            .map_err(|_| DecimalError::Missing)?;
         if value.is_infinite() {
             Err(DecimalError::TooLarge)
         } else if value.is_normal() {
@@ -70,9 +83,16 @@ impl Decimal {
 
     /// Times a whole number and a power of ten.
     pub(super) fn scaled(&self, factor: u32, exponent: i32) -> Self {
-        let digits = self.digits.iter().map(|&digit| i64::from(digit) * i64::from(factor)).collect();
+        let digits = self
+            .digits
+            .iter()
+            .map(|&digit| i64::from(digit) * i64::from(factor))
+            .collect();
         let product = Self::carried(digits, self.exponent + exponent);
-        Self { negative: self.negative && !product.is_zero(), ..product }
+        Self {
+            negative: self.negative && !product.is_zero(),
+            ..product
+        }
     }
 
     /// The product, without its sign.
@@ -99,11 +119,6 @@ impl Decimal {
     }
 
     fn combined(&self, other: &Self, sign: i64) -> Self {
-        if self.is_zero() || other.is_zero() {
-            let rest = if other.is_zero() { self.clone() } else { other.clone() };
-            let flipped = other.is_zero() || sign > 0;
-            return Self { negative: (rest.negative == flipped) && !rest.is_zero(), ..rest };
-        }
         let exponent = self.exponent.min(other.exponent);
         let offset = |number: &Self| (number.exponent - exponent).unsigned_abs() as usize;
         let length = (self.digits.len() + offset(self)).max(other.digits.len() + offset(other));
@@ -128,7 +143,10 @@ impl Decimal {
         }
         if carry < 0 {
             let opposite = Self::carried(sums.into_iter().map(|sum| -sum).collect(), exponent);
-            return Self { negative: true, ..opposite };
+            return Self {
+                negative: true,
+                ..opposite
+            };
         }
         while carry > 0 {
             digits.push((carry % 10) as u8);
@@ -137,7 +155,11 @@ impl Decimal {
         while digits.last() == Some(&0) {
             digits.pop();
         }
-        Self { negative: false, digits, exponent }
+        Self {
+            negative: false,
+            digits,
+            exponent,
+        }
     }
 }
 
@@ -157,7 +179,9 @@ fn take_exponent(text: &str, of_zero: bool) -> Result<(i32, &str), DecimalError>
         return Ok((0, text));
     };
     let (negative, digits) = take_sign(after);
-    let length = digits.find(|c: char| !c.is_ascii_digit()).unwrap_or(digits.len());
+    let length = digits
+        .find(|c: char| !c.is_ascii_digit())
+        .unwrap_or(digits.len());
     if length == 0 {
         return Ok((0, text));
     }
@@ -166,7 +190,11 @@ fn take_exponent(text: &str, of_zero: bool) -> Result<(i32, &str), DecimalError>
     if of_zero || digits.is_empty() {
         return Ok((0, rest));
     }
-    let beyond = if negative { DecimalError::TooSmall } else { DecimalError::TooLarge };
+    let beyond = if negative {
+        DecimalError::TooSmall
+    } else {
+        DecimalError::TooLarge
+    };
     if digits.len() > EXPONENT_DIGITS {
         return Err(beyond);
     }

@@ -32,10 +32,18 @@ const REPEATED_MAXIMUM: usize = 40;
 pub fn read_band(text: &str, dimension: Dimension) -> Result<Band, QuantityError> {
     let (nominal, rest) = begin(text, dimension)?;
     let value = rounded(&nominal, text)?;
-    let (low, high) = if rest.is_empty() { (value, value) } else { ends(&nominal, rest, dimension)? };
+    let (low, high) = if rest.is_empty() {
+        (value, value)
+    } else {
+        ends(&nominal, rest, dimension)?
+    };
     let disordered = |_| match low > high {
-        true => QuantityError::Inverted { text: shorten(rest) },
-        false => QuantityError::NominalOutside { text: shorten(rest) },
+        true => QuantityError::Inverted {
+            text: shorten(rest),
+        },
+        false => QuantityError::NominalOutside {
+            text: shorten(rest),
+        },
     };
     Band::new(low, value, high).map_err(disordered)
 }
@@ -59,7 +67,10 @@ fn begin(text: &str, dimension: Dimension) -> Result<(Decimal, &str), QuantityEr
         return Err(QuantityError::TooLong { dimension });
     }
     if let Some(character) = text.chars().find(|&c| !is_known(c)) {
-        return Err(QuantityError::Character { character, dimension });
+        return Err(QuantityError::Character {
+            character,
+            dimension,
+        });
     }
     let text = text.trim_matches(is_space);
     if text.is_empty() {
@@ -87,25 +98,36 @@ fn take_quantity(text: &str, dimension: Dimension) -> Result<(Decimal, &str), Qu
         return Ok(read);
     }
     let (number, word, rest) = take_number_and_word(text, dimension)?;
-    let scale = dimension.scale_of(word).ok_or_else(|| unit_error(word, dimension))?;
+    let scale = dimension
+        .scale_of(word)
+        .ok_or_else(|| unit_error(word, dimension))?;
     let exact = number.scaled(scale.factor, scale.exponent);
     rounded(&exact, text)?;
     Ok((exact, rest))
 }
 
 /// Takes a number and the word behind it, which is never empty.
-fn take_number_and_word(text: &str, dimension: Dimension) -> Result<(Decimal, &str, &str), QuantityError> {
-    let (number, rest) = Decimal::take(text).map_err(|error| number_error(text, dimension, error))?;
+fn take_number_and_word(
+    text: &str,
+    dimension: Dimension,
+) -> Result<(Decimal, &str, &str), QuantityError> {
+    let (number, rest) =
+        Decimal::take(text).map_err(|error| number_error(text, dimension, error))?;
     let after = rest.trim_start_matches(is_space);
     if let Some(tail) = rest.strip_prefix(',') {
         return Err(comma_error(text, tail));
     }
     if rest.starts_with(['\'', '_']) || after.starts_with(|c: char| c.is_ascii_digit()) {
-        return Err(QuantityError::Separators { text: shorten(text) });
+        return Err(QuantityError::Separators {
+            text: shorten(text),
+        });
     }
     let (word, rest) = after.split_at(after.find(ends_unit).unwrap_or(after.len()));
     if word.is_empty() {
-        return Err(QuantityError::NoUnit { text: shorten(text), dimension });
+        return Err(QuantityError::NoUnit {
+            text: shorten(text),
+            dimension,
+        });
     }
     Ok((number, word, rest))
 }
@@ -113,10 +135,24 @@ fn take_number_and_word(text: &str, dimension: Dimension) -> Result<(Decimal, &s
 /// Letter codes of IEC 60062, in which the letter stands for the point: `4k7`, `R047`, `4n7`, `22u`.
 fn letter_code(text: &str, dimension: Dimension) -> Option<(Decimal, &str)> {
     let letters: &[(char, i32)] = match dimension {
-        Dimension::Resistance => &[('R', 0), ('L', -3), ('K', 3), ('k', 3), ('M', 6), ('G', 9), ('T', 12)],
-        Dimension::Capacitance => {
-            &[('p', -12), ('n', -9), ('u', -6), ('\u{b5}', -6), ('\u{3bc}', -6), ('m', -3), ('F', 0)]
-        }
+        Dimension::Resistance => &[
+            ('R', 0),
+            ('L', -3),
+            ('K', 3),
+            ('k', 3),
+            ('M', 6),
+            ('G', 9),
+            ('T', 12),
+        ],
+        Dimension::Capacitance => &[
+            ('p', -12),
+            ('n', -9),
+            ('u', -6),
+            ('\u{b5}', -6),
+            ('\u{3bc}', -6),
+            ('m', -3),
+            ('F', 0),
+        ],
         _ => return None,
     };
     let (word, rest) = text.split_at(text.find(ends_unit).unwrap_or(text.len()));
@@ -124,21 +160,39 @@ fn letter_code(text: &str, dimension: Dimension) -> Option<(Decimal, &str)> {
     let letter = word[at..].chars().next()?;
     let &(_, exponent) = letters.iter().find(|(known, _)| *known == letter)?;
     let (whole, fraction) = (&word[..at], &word[at + letter.len_utf8()..]);
-    let is_code = fraction.bytes().all(|b| b.is_ascii_digit()) && !(whole.is_empty() && fraction.is_empty());
+    let is_code =
+        fraction.bytes().all(|b| b.is_ascii_digit()) && !(whole.is_empty() && fraction.is_empty());
     is_code.then(|| (Decimal::around(whole, fraction).scaled(1, exponent), rest))
 }
 
 /// `low to high)` behind the bracket.
-fn range(inner: &str, whole: &str, dimension: Dimension) -> Result<(Decimal, Decimal), QuantityError> {
-    let bad = || QuantityError::Tolerance { text: shorten(whole) };
+fn range(
+    inner: &str,
+    whole: &str,
+    dimension: Dimension,
+) -> Result<(Decimal, Decimal), QuantityError> {
+    let bad = || QuantityError::Tolerance {
+        text: shorten(whole),
+    };
     let (low, rest) = take_quantity(inner.trim_start_matches(is_space), dimension)?;
-    let rest = rest.trim_start_matches(is_space).strip_prefix("to").ok_or_else(bad)?;
+    let rest = rest
+        .trim_start_matches(is_space)
+        .strip_prefix("to")
+        .ok_or_else(bad)?;
     let (high, rest) = take_quantity(rest.trim_start_matches(is_space), dimension)?;
-    if rest.trim_matches(is_space) == ")" { Ok((low, high)) } else { Err(bad()) }
+    if rest.trim_matches(is_space) == ")" {
+        Ok((low, high))
+    } else {
+        Err(bad())
+    }
 }
 
 /// How far a band reaches down and up: `±p %`, `±x unit`, or `-p %/+q %` in either order of the two.
-fn widths(nominal: &Decimal, text: &str, dimension: Dimension) -> Result<(Decimal, Decimal), QuantityError> {
+fn widths(
+    nominal: &Decimal,
+    text: &str,
+    dimension: Dimension,
+) -> Result<(Decimal, Decimal), QuantityError> {
     let width = |part: &str| whole_width(nominal, part, text, dimension);
     for sign in ["\u{b1}", "+/-", "+/\u{2212}", "+-"] {
         if let Some(rest) = text.strip_prefix(sign) {
@@ -146,10 +200,17 @@ fn widths(nominal: &Decimal, text: &str, dimension: Dimension) -> Result<(Decima
             return Ok((both.clone(), both));
         }
     }
-    let bad = || QuantityError::Tolerance { text: shorten(text) };
+    let bad = || QuantityError::Tolerance {
+        text: shorten(text),
+    };
     let (one, other) = text.split_once('/').ok_or_else(bad)?;
     let (one, other) = (one.trim_matches(is_space), other.trim_matches(is_space));
-    let (down, up) = match (strip_minus(one), other.strip_prefix('+'), one.strip_prefix('+'), strip_minus(other)) {
+    let (down, up) = match (
+        strip_minus(one),
+        other.strip_prefix('+'),
+        one.strip_prefix('+'),
+        strip_minus(other),
+    ) {
         (Some(down), Some(up), ..) | (.., Some(up), Some(down)) => (down, up),
         _ => return Err(bad()),
     };
@@ -157,13 +218,20 @@ fn widths(nominal: &Decimal, text: &str, dimension: Dimension) -> Result<(Decima
 }
 
 /// One width, a percentage of the nominal value or a quantity of its own, with nothing behind it.
-fn whole_width(nominal: &Decimal, part: &str, text: &str, dimension: Dimension) -> Result<Decimal, QuantityError> {
-    let bad = || QuantityError::Tolerance { text: shorten(text) };
+fn whole_width(
+    nominal: &Decimal,
+    part: &str,
+    text: &str,
+    dimension: Dimension,
+) -> Result<Decimal, QuantityError> {
+    let bad = || QuantityError::Tolerance {
+        text: shorten(text),
+    };
     let part = part.trim_matches(is_space);
     if !part.starts_with(|c: char| c.is_ascii_alphanumeric() || c == '.') {
         return Err(bad());
     }
-    let relative = dimension != Dimension::Ratio && part.ends_with('%');
+    let relative = dimension != Dimension::Ratio && part.contains('%');
     let own = match dimension {
         _ if relative => Dimension::Ratio,
         Dimension::Temperature => Dimension::TemperatureDifference,
@@ -176,13 +244,21 @@ fn whole_width(nominal: &Decimal, part: &str, text: &str, dimension: Dimension) 
     if !rest.is_empty() {
         return Err(bad());
     }
-    Ok(if relative { nominal.magnitude_times(&width) } else { width })
+    Ok(if relative {
+        nominal.magnitude_times(&width)
+    } else {
+        width
+    })
 }
 
 fn rounded(exact: &Decimal, text: &str) -> Result<f64, QuantityError> {
     exact.value().map_err(|error| match error {
-        DecimalError::TooSmall => QuantityError::Underflow { text: shorten(text) },
-        _ => QuantityError::Overflow { text: shorten(text) },
+        DecimalError::TooSmall => QuantityError::Underflow {
+            text: shorten(text),
+        },
+        _ => QuantityError::Overflow {
+            text: shorten(text),
+        },
     })
 }
 
@@ -190,42 +266,79 @@ fn number_error(text: &str, dimension: Dimension, error: DecimalError) -> Quanti
     let (_, unsigned) = take_sign(text);
     let lower = unsigned.to_ascii_lowercase();
     match error {
-        DecimalError::TooLarge => QuantityError::Overflow { text: shorten(text) },
-        DecimalError::TooSmall => QuantityError::Underflow { text: shorten(text) },
-        DecimalError::Points => QuantityError::Separators { text: shorten(text) },
+        DecimalError::TooLarge => QuantityError::Overflow {
+            text: shorten(text),
+        },
+        DecimalError::TooSmall => QuantityError::Underflow {
+            text: shorten(text),
+        },
+        DecimalError::Points => QuantityError::Separators {
+            text: shorten(text),
+        },
         DecimalError::Missing if unsigned.starts_with(',') => comma_error(text, &unsigned[1..]),
         DecimalError::Missing if lower.starts_with("inf") || lower.starts_with("nan") => {
-            QuantityError::NotFinite { text: shorten(text), dimension }
+            QuantityError::NotFinite {
+                text: shorten(text),
+                dimension,
+            }
         }
-        DecimalError::Missing => QuantityError::NoNumber { text: shorten(text), dimension },
+        DecimalError::Missing => QuantityError::NoNumber {
+            text: shorten(text),
+            dimension,
+        },
     }
 }
 
 /// A comma before three digits may be meant to group them; any other is a decimal comma.
 fn comma_error(text: &str, tail: &str) -> QuantityError {
-    let digits = tail.find(|c: char| !c.is_ascii_digit()).unwrap_or(tail.len());
+    let digits = tail
+        .find(|c: char| !c.is_ascii_digit())
+        .unwrap_or(tail.len());
     let (_, unsigned) = take_sign(text);
     let groups = digits == 3 && !unsigned.starts_with(['0', ',']);
     match groups {
-        true => QuantityError::Separators { text: shorten(text) },
-        false => QuantityError::DecimalComma { text: shorten(text) },
+        true => QuantityError::Separators {
+            text: shorten(text),
+        },
+        false => QuantityError::DecimalComma {
+            text: shorten(text),
+        },
     }
 }
 
 fn unit_error(word: &str, dimension: Dimension) -> QuantityError {
-    let unknown = |advice: String| QuantityError::UnknownUnit { unit: shorten(word), dimension, advice };
+    let unknown = |advice: String| QuantityError::UnknownUnit {
+        unit: shorten(word),
+        dimension,
+        advice,
+    };
     let unit = dimension.units()[0];
     let small = word.strip_prefix('K').map(|rest| format!("k{rest}"));
-    if let Some(kilo) = small.as_deref().filter(|kilo| dimension.scale_of(kilo).is_some()) {
+    if let Some(kilo) = small
+        .as_deref()
+        .filter(|kilo| dimension.scale_of(kilo).is_some())
+    {
         return unknown(format!("kilo is a small k: write \"{kilo}\""));
     }
     let prefix = small.as_deref().unwrap_or(word);
     if unit.prefix_maximum.is_some() && PREFIXES.iter().any(|(text, _)| *text == prefix) {
-        return unknown(format!("a prefix needs its unit: write \"{prefix}{}\"", unit.text));
+        return unknown(format!(
+            "a prefix needs its unit: write \"{prefix}{}\"",
+            unit.text
+        ));
     }
-    let others = Dimension::ALL.into_iter().filter(|&other| other != dimension);
-    if let Some(found) = others.into_iter().find(|other| other.scale_of(word).is_some()) {
-        return QuantityError::WrongDimension { unit: shorten(word), found, dimension };
+    let others = Dimension::ALL
+        .into_iter()
+        .filter(|&other| other != dimension);
+    if let Some(found) = others
+        .into_iter()
+        .find(|other| other.scale_of(word).is_some())
+    {
+        return QuantityError::WrongDimension {
+            unit: shorten(word),
+            found,
+            dimension,
+        };
     }
     match respelt(prefix, dimension) {
         Some(meant) => unknown(format!("write \"{meant}\"")),
@@ -239,7 +352,8 @@ fn respelt(word: &str, dimension: Dimension) -> Option<String> {
         let at = word.len().checked_sub(unit.text.len())?;
         let (prefix, own) = (word.get(..at)?, word.get(at..)?);
         let meant = format!("{prefix}{}", unit.text);
-        (own.eq_ignore_ascii_case(unit.text) && dimension.scale_of(&meant).is_some()).then_some(meant)
+        (own.eq_ignore_ascii_case(unit.text) && dimension.scale_of(&meant).is_some())
+            .then_some(meant)
     })
 }
 
@@ -251,7 +365,16 @@ fn is_space(c: char) -> bool {
 fn is_known(c: char) -> bool {
     let beyond_ascii = matches!(
         c,
-        '\u{b0}' | '\u{2103}' | '\u{b1}' | '\u{b2}' | '\u{b5}' | '\u{3bc}' | '\u{3a9}' | '\u{2126}' | '\u{2212}' | '\u{2013}'
+        '\u{b0}'
+            | '\u{2103}'
+            | '\u{b1}'
+            | '\u{b2}'
+            | '\u{b5}'
+            | '\u{3bc}'
+            | '\u{3a9}'
+            | '\u{2126}'
+            | '\u{2212}'
+            | '\u{2013}'
     );
     c.is_ascii_graphic() || is_space(c) || beyond_ascii
 }
@@ -263,7 +386,11 @@ fn strip_minus(text: &str) -> Option<&str> {
 
 /// Where a unit ends.
 fn ends_unit(c: char) -> bool {
-    is_space(c) || matches!(c, '(' | ')' | '\u{b1}' | '/' | '+' | '-' | '\u{2212}' | '\u{2013}')
+    is_space(c)
+        || matches!(
+            c,
+            '(' | ')' | '\u{b1}' | '/' | '+' | '-' | '\u{2212}' | '\u{2013}'
+        )
 }
 
 /// The beginning of a text, for an error message.

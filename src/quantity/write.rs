@@ -5,11 +5,23 @@ use super::dimension::Dimension;
 use super::parse::read_band;
 
 /// Prefixes that are written, by decimal exponent, ascending.
-const WRITTEN: [(&str, i32); 9] =
-    [("p", -12), ("n", -9), ("u", -6), ("m", -3), ("", 0), ("k", 3), ("M", 6), ("G", 9), ("T", 12)];
+const WRITTEN: [(&str, i32); 9] = [
+    ("p", -12),
+    ("n", -9),
+    ("u", -6),
+    ("m", -3),
+    ("", 0),
+    ("k", 3),
+    ("M", 6),
+    ("G", 9),
+    ("T", 12),
+];
 
 /// Powers of ten of the first digit between which a number is written plainly, without an exponent.
 const PLAIN: std::ops::RangeInclusive<i32> = -4..=8;
+
+/// Widths that are written in percent, as fractions of the nominal value: above and below, both ends read better.
+const SENSIBLE: std::ops::Range<f64> = 1e-6..10.0;
 
 /// A quantity as text with its unit, in ASCII: the fewest digits that read back to the same bits, the point shifted by the prefix
 /// that leaves one to three digits before it, where there is one. Zero is written without sign or prefix.
@@ -29,11 +41,18 @@ pub fn write_quantity(value: f64, dimension: Dimension) -> String {
     let (prefix, shift) = match unit.prefix_maximum {
         None => ("", unit.scale.exponent),
         Some(maximum) => {
-            let fitting = WRITTEN.into_iter().rev().find(|(_, shift)| *shift <= exponent.min(maximum));
+            let fitting = WRITTEN
+                .into_iter()
+                .rev()
+                .find(|(_, shift)| *shift <= exponent.min(maximum));
             fitting.unwrap_or(WRITTEN[0])
         }
     };
-    format!("{} {prefix}{}", shifted(mantissa, exponent - shift), unit.text)
+    format!(
+        "{} {prefix}{}",
+        shifted(mantissa, exponent - shift),
+        unit.text
+    )
 }
 
 /// `d.ddd` times ten to the `places`, plainly where that is short.
@@ -41,7 +60,9 @@ fn shifted(mantissa: &str, places: i32) -> String {
     if !PLAIN.contains(&places) {
         return format!("{mantissa}e{places}");
     }
-    let (sign, unsigned) = mantissa.strip_prefix('-').map_or(("", mantissa), |rest| ("-", rest));
+    let (sign, unsigned) = mantissa
+        .strip_prefix('-')
+        .map_or(("", mantissa), |rest| ("-", rest));
     let digits: String = unsigned.chars().filter(char::is_ascii_digit).collect();
     let zeros = |count: usize| "0".repeat(count);
     let text = match usize::try_from(1 + places) {
@@ -60,10 +81,15 @@ pub fn write_band(band: &Band, dimension: Dimension) -> String {
     if band.is_point() {
         return nominal;
     }
-    let (low, high) = (write_quantity(band.low(), dimension), write_quantity(band.high(), dimension));
+    let (low, high) = (
+        write_quantity(band.low(), dimension),
+        write_quantity(band.high(), dimension),
+    );
     let mut best = format!("{nominal} ({low} to {high})");
     for candidate in candidates(band, dimension, &nominal) {
-        if candidate.chars().count() < best.chars().count() && read_band(&candidate, dimension).as_ref() == Ok(band) {
+        if candidate.chars().count() < best.chars().count()
+            && read_band(&candidate, dimension).as_ref() == Ok(band)
+        {
             best = candidate;
         }
     }
@@ -74,8 +100,12 @@ pub fn write_band(band: &Band, dimension: Dimension) -> String {
 fn candidates(band: &Band, dimension: Dimension, nominal: &str) -> Vec<String> {
     let (down, up) = (band.nominal() - band.low(), band.high() - band.nominal());
     let mut out = Vec::new();
-    if band.nominal() != 0.0 && !matches!(dimension, Dimension::Ratio | Dimension::Temperature) {
-        let percent = |width: f64| write_quantity(without_noise(width / band.nominal().abs()), Dimension::Ratio);
+    let magnitude = band.nominal().abs();
+    let no_percentage = matches!(dimension, Dimension::Ratio | Dimension::Temperature);
+    let sensible = |width: f64| width == 0.0 || SENSIBLE.contains(&(width / magnitude));
+    if !no_percentage && magnitude > 0.0 && sensible(down) && sensible(up) {
+        let percent =
+            |width: f64| write_quantity(without_noise(width / magnitude), Dimension::Ratio);
         let (below, above) = (percent(down), percent(up));
         out.push(format!("{nominal} \u{b1}{below}"));
         out.push(format!("{nominal} -{below}/+{above}"));
@@ -84,7 +114,10 @@ fn candidates(band: &Band, dimension: Dimension, nominal: &str) -> Vec<String> {
         Dimension::Temperature => Dimension::TemperatureDifference,
         other => other,
     };
-    out.push(format!("{nominal} \u{b1}{}", write_quantity(without_noise(down), own)));
+    out.push(format!(
+        "{nominal} \u{b1}{}",
+        write_quantity(without_noise(down), own)
+    ));
     out
 }
 
