@@ -16,6 +16,11 @@ use crate::network::{Network, Unsolvable};
 pub const ORDERS: usize = 5;
 /// A derivative this far below the sum of its terms' magnitudes is rounding.
 pub const NOISE: f64 = 1e-11;
+/// Where no pattern holds with slacks judged that finely, rounding was larger than it should have been: they are judged again,
+/// more coarsely by these factors.
+const LENIENCY: [f64; 3] = [1.0, 1e2, 1e4];
+/// What a state component counts for near its zero, of its scale, where rounding is judged.
+const STATE_FLOOR: f64 = 0.1;
 /// Widest distance, in switches, at which other patterns are tried.
 const REACH: u32 = 6;
 /// A state component that moves by more than this, relative to its scale, has jumped.
@@ -30,6 +35,8 @@ pub struct Regimes<'a> {
     ready: Vec<Regime>,
     /// One bit a switch that is a diode, not part of a load.
     diodes: u64,
+    /// How much more coarsely than usual slacks are judged.
+    leniency: f64,
 }
 
 /// The instant at which a pattern is chosen.
@@ -91,6 +98,7 @@ impl<'a> Regimes<'a> {
             known: Vec::new(),
             ready: Vec::new(),
             diodes: network.diodes(),
+            leniency: 1.0,
         }
     }
 
@@ -126,6 +134,18 @@ impl<'a> Regimes<'a> {
     /// # Errors
     /// [`SolverError::NoConduction`] where none is found.
     pub fn choose(&mut self, instant: Instant<'_>, hint: u64) -> Result<Choice, SolverError> {
+        let mut found = Err(SolverError::Modes);
+        for leniency in LENIENCY {
+            self.leniency = leniency;
+            found = self.search(instant, hint);
+            if !matches!(found, Err(SolverError::NoConduction { .. })) {
+                break;
+            }
+        }
+        found
+    }
+
+    fn search(&mut self, instant: Instant<'_>, hint: u64) -> Result<Choice, SolverError> {
         let mut tried = Vec::new();
         let mut reason = Unsolvable::ShortedSource;
         let mut pattern = hint;
@@ -201,7 +221,7 @@ impl<'a> Regimes<'a> {
         let derivatives = derivatives(self.network, regime, extended);
         let (mut violated, mut resting) = (0, 0);
         for (switch, row) in regime.slack.iter().enumerate() {
-            match sign(row, &derivatives) {
+            match sign(row, &derivatives, self.leniency) {
                 Some(false) => violated |= 1 << switch,
                 None => resting |= 1 << switch,
                 Some(true) => {}
@@ -222,11 +242,11 @@ impl<'a> Regimes<'a> {
 }
 
 /// Whether a row's first derivative that is not zero is positive; `None` where all are zero.
-fn sign(row: &[f64], derivatives: &[Derivative]) -> Option<bool> {
+fn sign(row: &[f64], derivatives: &[Derivative], leniency: f64) -> Option<bool> {
     derivatives
         .iter()
         .map(|derivative| derivative.dot(row))
-        .find(|(value, noise)| value.abs() > *noise)
+        .find(|(value, noise)| value.abs() > leniency * noise)
         .map(|(value, _)| value > 0.0)
 }
 
@@ -267,8 +287,8 @@ pub fn multiply(rows: &nalgebra::DMatrix<f64>, extended: &[f64]) -> Vec<f64> {
 fn rounding_sizes(network: &Network, regime: &Regime, extended: &[f64]) -> Vec<f64> {
     let n = regime.pattern.states;
     let floor = |index: usize| match index {
-        _ if index < regime.pattern.voltages => SINUSOID_FLOOR * network.voltage_scale,
-        _ if index < n => SINUSOID_FLOOR * network.current_scale,
+        _ if index < regime.pattern.voltages => STATE_FLOOR * network.voltage_scale,
+        _ if index < n => STATE_FLOOR * network.current_scale,
         _ => SINUSOID_FLOOR,
     };
     extended.iter().enumerate().map(|(index, v)| v.abs().max(floor(index))).collect()

@@ -15,14 +15,16 @@ const ENVELOPE: f64 = 1.5;
 const TERMS: usize = 4;
 /// At the start, a derivative this far below the sum of its terms' magnitudes is rounding.
 const NOISE: f64 = 1e-11;
+/// Rounding of a coefficient, of the largest coefficient.
+const ROUNDING: f64 = 1e-14;
 
 /// A signal that must stay positive.
 #[derive(Clone, Debug)]
 pub struct Watched {
     /// Coefficients over the basis.
     pub signal: Vec<f64>,
-    /// What the caller knows it by.
-    pub tag: usize,
+    /// One bit a switch whose slack it is.
+    pub switches: u64,
 }
 
 /// Where the first zero is.
@@ -30,7 +32,7 @@ pub struct Watched {
 pub struct Crossing {
     /// Seconds since the pattern began.
     pub since: f64,
-    /// Tag of the signal that falls through zero.
+    /// Index of the signal that falls through zero.
     pub tag: usize,
 }
 
@@ -110,7 +112,7 @@ impl<'a> Search<'a> {
                         .into_iter()
                         .map(|index| Crossing {
                             since: self.refine(index, here, there),
-                            tag: self.watched[index].tag,
+                            tag: index,
                         })
                         .min_by(|a, b| a.since.total_cmp(&b.since));
                     return Ok(first);
@@ -121,7 +123,7 @@ impl<'a> Search<'a> {
                         // Touches zero within rounding: an event in its own right, for the caller to judge.
                         return Ok(Some(Crossing {
                             since: there,
-                            tag: self.watched[index].tag,
+                            tag: index,
                         }));
                     }
                 }
@@ -162,10 +164,11 @@ impl<'a> Search<'a> {
             let signal = &self.derivatives[index][order];
             *value = self.smooth_dot(signal, values, h);
         }
+        let noise = if at_start { self.noise(index, values) } else { [0.0; TERMS] };
         if at_start && !envelope.any {
             // What rounding left of a derivative that is zero must not be taken for its sign.
-            for (value, signal) in c.iter_mut().zip(&self.derivatives[index]) {
-                if value.abs() > NOISE * self.basis.magnitude(signal, values) {
+            for (value, noise) in c.iter_mut().zip(noise) {
+                if value.abs() > noise {
                     break;
                 }
                 *value = 0.0;
@@ -179,7 +182,7 @@ impl<'a> Search<'a> {
             c[0] + 0.75 * c[1] * h + 0.25 * c[2] * h * h + c[3] * h.powi(3) / 24.0,
             c[0] + c[1] * h + 0.5 * c[2] * h * h + c[3] * h.powi(3) / 6.0 - r * h.powi(4) / 24.0,
         ];
-        if bernstein.iter().all(|b| b + envelope.lowest >= 0.0) && bernstein[4] + envelope.lowest > 0.0 {
+        if bernstein.iter().all(|b| b + envelope.lowest >= -noise[0]) && (at_start || bernstein[4] + envelope.lowest > 0.0) {
             return Verdict::Positive;
         }
         let slope = [
@@ -196,6 +199,21 @@ impl<'a> Search<'a> {
             return Verdict::Positive;
         }
         Verdict::Unknown
+    }
+
+    /// What of a signal and its derivatives may be rounding at the start: a part of their terms' magnitudes, and, since a mode's
+    /// coefficient is as uncertain as the largest, a part of that at the rate of the fastest.
+    fn noise(&self, index: usize, values: &[f64]) -> [f64; TERMS] {
+        let modes = self.basis.modes.iter().map(|m| m.rate.norm());
+        let fastest = modes.chain(self.basis.angular.iter().copied()).fold(0.0, f64::max);
+        let derivatives = &self.derivatives[index];
+        let largest = derivatives[0].iter().fold(0.0_f64, |m, c| m.max(c.abs()));
+        let mut rounding = ROUNDING * largest;
+        std::array::from_fn(|order| {
+            let noise = NOISE * self.basis.magnitude(&derivatives[order], values) + rounding;
+            rounding *= fastest;
+            noise
+        })
     }
 
     fn value_at(&self, index: usize, since: f64) -> f64 {

@@ -80,7 +80,8 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
                 limit: EVENT_STEPS_MAXIMUM,
             })?;
         flow.length = crossing.map_or(end - stretch.time, |c| c.since);
-        stretch.leave(regime, &flow, network, crossing.map(|c| c.tag));
+        let event = crossing.map(|c| watched[c.tag].switches.trailing_zeros() as usize);
+        stretch.leave(regime, &flow, network, event);
         flows.push(flow);
         let Some(crossing) = crossing else {
             return Ok(Run {
@@ -92,7 +93,7 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
             });
         };
         work.events += 1;
-        hint ^= 1 << crossing.tag;
+        hint ^= watched[crossing.tag].switches;
         if stretch.time >= end {
             stretch.time = end;
         }
@@ -102,7 +103,10 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
     })
 }
 
-/// The slacks worth watching: those that are not zero throughout, each once.
+/// Slacks this near, relative to their size, are one: of diodes in series, or of opposite ones of a bridge.
+const ALIKE: f64 = 1e-9;
+
+/// The slacks worth watching: those that are not zero throughout, each once with all switches that share it.
 fn watch(
     network: &Network,
     regime: &super::regime::Regime,
@@ -120,12 +124,14 @@ fn watch(
         if size <= 1e-13 * scale {
             continue;
         }
-        if watched.iter().any(|w| w.signal == *scratch) {
+        let alike = |w: &&mut Watched| w.signal.iter().zip(scratch.iter()).all(|(a, b)| (a - b).abs() <= ALIKE * size);
+        if let Some(known) = watched.iter_mut().find(alike) {
+            known.switches |= 1 << tag;
             continue;
         }
         watched.push(Watched {
             signal: scratch.clone(),
-            tag,
+            switches: 1 << tag,
         });
     }
     watched

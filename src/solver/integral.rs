@@ -250,7 +250,7 @@ pub fn take_extremes(basis: &Basis, flow: &Flow, signal: &[f64], extremes: &mut 
         }
         let watched = [Watched {
             signal: slope.iter().map(|c| c * sign).collect(),
-            tag: 0,
+            switches: 0,
         }];
         let found = Search::new(basis, flow.start, &watched).first(from, flow.length);
         let Ok(Some(turn)) = found else { return };
