@@ -14,7 +14,9 @@ pub fn now() -> Instant {
 /// A name for a request that no other request of this process has, nor, but for chance, one of another process.
 #[must_use]
 pub fn request_id() -> String {
-    let nanos = SystemTime::now().duration_since(UNIX_EPOCH).map_or(0, |d| d.as_nanos() as u64);
+    let nanos = SystemTime::now()
+        .duration_since(UNIX_EPOCH)
+        .map_or(0, |d| d.as_nanos() as u64);
     let count = NEXT.fetch_add(1, Ordering::Relaxed);
     format!("{nanos:016x}-{count:06x}")
 }

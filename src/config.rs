@@ -75,6 +75,18 @@ pub struct Limits {
     /// Open connections; more wait to be accepted.
     #[arg(long, env = "MAINSTAY_CONNECTIONS_MAXIMUM", default_value_t = 1024)]
     pub connections_maximum: usize,
+    /// Seconds in which a request's header must have arrived, the silence before it included.
+    #[arg(long, env = "MAINSTAY_HEADER_SECONDS_MAXIMUM", default_value_t = 10)]
+    pub header_seconds_maximum: u64,
+    /// Seconds in which a request's body must have arrived.
+    #[arg(long, env = "MAINSTAY_BODY_SECONDS_MAXIMUM", default_value_t = 15)]
+    pub body_seconds_maximum: u64,
+    /// Seconds that a client may take nothing of its answer before the connection is closed.
+    #[arg(long, env = "MAINSTAY_STALL_SECONDS_MAXIMUM", default_value_t = 30)]
+    pub stall_seconds_maximum: u64,
+    /// Seconds that requests in hand have to finish after SIGTERM or SIGINT.
+    #[arg(long, env = "MAINSTAY_DRAIN_SECONDS_MAXIMUM", default_value_t = 8)]
+    pub drain_seconds_maximum: u64,
 }
 
 impl Default for Limits {

@@ -43,7 +43,7 @@ fn serve(settings: Serve) -> Result<(), Box<dyn Error>> {
         draining: Arc::new(AtomicBool::new(false)),
     };
     let runtime = tokio::runtime::Builder::new_multi_thread().enable_all().build()?;
-    runtime.block_on(async {
+    let done = runtime.block_on(async {
         let listener = TcpListener::bind(settings.listen)
             .await
             .map_err(|error| format!("cannot listen on {}: {error}", settings.listen))?;
@@ -60,15 +60,22 @@ fn serve(settings: Serve) -> Result<(), Box<dyn Error>> {
         let router = api::service(state.clone());
         api::serve::serve(listener, router, state, shutdown).await;
         Ok(())
-    })
+    });
+    // A computation that outlives the drain has nobody left to answer: the process does not wait for it.
+    runtime.shutdown_background();
+    done
 }
 
 /// Says where the service is, what to beware of, and one line to try.
 fn greet(address: SocketAddr) {
     println!("Mainstay serves http://{address}/ (page), http://{address}/docs (API)");
-    println!("Caution: mains voltage and charged capacitors can kill; results do not replace codes, type tests or a licensed person.");
+    println!(
+        "Caution: mains voltage and charged capacitors can kill; results do not replace codes, type tests or a licensed person."
+    );
     if !address.ip().is_loopback() {
-        println!("Caution: this address is not loopback, and this version has no accounts: everybody who reaches it may use it.");
+        println!(
+            "Caution: this address is not loopback, and this version has no accounts: everybody who reaches it may use it."
+        );
     }
     println!(
         "Try: curl -s http://{address}/v1/operating-point -H 'content-type: application/json' -d '{{\"supply\": {{\"line\": {{\"voltage\": \"24 V\", \"frequency\": \"50 Hz\", \"resistance\": \"0.5 ohm\"}}, \"outputs\": [{{\"rectifier\": {{\"circuit\": \"bridge\", \"diode\": {{\"threshold_voltage\": \"0.8 V\", \"slope_resistance\": \"20 mohm\"}}}}, \"rails\": [{{\"filter\": [{{\"capacitor\": {{\"capacitance\": \"4700 uF\", \"esr\": \"40 mohm\"}}}}], \"load\": {{\"kind\": \"current\", \"current\": \"1 A\"}}}}]}}]}}}}'"

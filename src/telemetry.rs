@@ -4,7 +4,9 @@ use metrics_exporter_prometheus::{Matcher, PrometheusBuilder, PrometheusHandle};
 use std::time::Duration;
 
 /// Bounds of the duration buckets in seconds, as OpenTelemetry's HTTP conventions advise.
-const BUCKETS: [f64; 14] = [0.005, 0.01, 0.025, 0.05, 0.075, 0.1, 0.25, 0.5, 0.75, 1.0, 2.5, 5.0, 7.5, 10.0];
+const BUCKETS: [f64; 14] = [
+    0.005, 0.01, 0.025, 0.05, 0.075, 0.1, 0.25, 0.5, 0.75, 1.0, 2.5, 5.0, 7.5, 10.0,
+];
 /// Seconds between two clean-ups of the recorder, without which its histograms grow.
 const UPKEEP_SECONDS: u64 = 5;
 
@@ -12,9 +14,15 @@ const UPKEEP_SECONDS: u64 = 5;
 pub fn logs(json: bool) {
     let filter = tracing_subscriber::EnvFilter::try_from_default_env()
         .unwrap_or_else(|_| tracing_subscriber::EnvFilter::new("info"));
-    let builder = tracing_subscriber::fmt().with_env_filter(filter).with_writer(std::io::stderr);
+    let builder = tracing_subscriber::fmt()
+        .with_env_filter(filter)
+        .with_writer(std::io::stderr);
     // A second start in the same process, as in tests, keeps the first's logs.
-    let _ = if json { builder.json().try_init() } else { builder.try_init() };
+    let _ = if json {
+        builder.json().try_init()
+    } else {
+        builder.try_init()
+    };
 }
 
 /// A recorder for the process's metrics; the handle renders them. One process has one recorder: a second call gets a handle of
@@ -24,7 +32,9 @@ pub fn logs(json: bool) {
 /// Where the buckets are not accepted.
 pub fn metrics() -> Result<PrometheusHandle, metrics_exporter_prometheus::BuildError> {
     let name = Matcher::Full("http_server_request_duration_seconds".to_owned());
-    let recorder = PrometheusBuilder::new().set_buckets_for_metric(name, &BUCKETS)?.build_recorder();
+    let recorder = PrometheusBuilder::new()
+        .set_buckets_for_metric(name, &BUCKETS)?
+        .build_recorder();
     let handle = recorder.handle();
     let _ = metrics::set_global_recorder(recorder);
     Ok(handle)

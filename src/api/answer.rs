@@ -517,7 +517,9 @@ impl From<&crate::worst_case::Extremes> for Coverage {
             statement: if extremes.all_corners {
                 format!("all {total} corners were solved")
             } else {
-                format!("there are {total} corners; the signs of the changes along each band chose which of them were solved")
+                format!(
+                    "there are {total} corners; the signs of the changes along each band chose which of them were solved"
+                )
             },
         }
     }

@@ -68,7 +68,13 @@ async fn derating(State(state): State<AppState>, body: Body) -> Result<axum::Jso
     let (supply, policy) = read(&body.0, state.app.limits.bands_maximum).map_err(Problem::faulty)?;
     let derated = state.app.derating(supply, policy).await?;
     let mut cautions = answer::cautions();
-    cautions.extend(derated.policy.omitted.iter().map(|text| format!("Not checked: {text}.")));
+    cautions.extend(
+        derated
+            .policy
+            .omitted
+            .iter()
+            .map(|text| format!("Not checked: {text}.")),
+    );
     Ok(axum::Json(DeratingAnswer {
         checks: derated.checks.iter().map(Check::from).collect(),
         verdict: derated.verdict.into(),
@@ -82,7 +88,9 @@ async fn derating(State(state): State<AppState>, body: Body) -> Result<axum::Jso
 fn read(json: &Json, bands_maximum: usize) -> Result<(Supply, Policy), Vec<Fault>> {
     let faults = Faults::default();
     let request = Place::new(json, "", &faults).object().and_then(|mut f| {
-        let supply = f.required("supply").and_then(|place| banded(&place, bands_maximum, &faults));
+        let supply = f
+            .required("supply")
+            .and_then(|place| banded(&place, bands_maximum, &faults));
         let policy = policies::either(&mut f);
         f.finish("this request");
         Some((supply?, policy?))

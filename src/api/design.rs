@@ -264,14 +264,22 @@ fn answer(designed: &Designed) -> DesignAnswer {
     assumptions.push("Transformers have no leakage inductance and no core loss in the search; both lower the rail a little: confirm the chosen part by an operating point.".to_owned());
     let mut cautions = answer::cautions();
     cautions.push("Ratings hold for the corners of the bands given; switch-on and line transients ask for more: a surge current stands under picks.".to_owned());
-    cautions.extend(designed.policy.omitted.iter().map(|text| format!("Not checked: {text}.")));
+    cautions.extend(
+        designed
+            .policy
+            .omitted
+            .iter()
+            .map(|text| format!("Not checked: {text}.")),
+    );
     DesignAnswer {
         candidates: outcome.candidates.iter().map(candidate).collect(),
         considered: outcome.considered as u64,
         rejected: outcome.rejected.iter().map(rejection).collect(),
         complete: outcome.complete,
         score: match need.minimise {
-            Minimise::Volume => "volume of transformer and capacitors in cubic centimetres, estimated for ranking alone",
+            Minimise::Volume => {
+                "volume of transformer and capacitors in cubic centimetres, estimated for ranking alone"
+            }
             Minimise::Loss => "largest total loss over all corners in watts",
         }
         .to_owned(),
@@ -317,7 +325,10 @@ fn rejection(rejection: &crate::design::Rejection) -> Rejection {
 
 /// Figures that a design review asks for.
 fn reviewed(pointer: &str) -> bool {
-    pointer.contains("/voltage/") || pointer.contains("_peak") || pointer.ends_with("current_rms") || pointer == "/losses/total"
+    pointer.contains("/voltage/")
+        || pointer.contains("_peak")
+        || pointer.ends_with("current_rms")
+        || pointer == "/losses/total"
 }
 
 fn candidate(candidate: &Candidate) -> DesignCandidate {

@@ -17,7 +17,9 @@ impl FromRequest<AppState> for Body {
     async fn from_request(request: Request, state: &AppState) -> Result<Self, Problem> {
         accepted(request.headers())?;
         let bytes = read(request, state.app.limits.body_maximum).await?;
-        json::read(&bytes).map(Body).map_err(|error| Problem::new(Kind::NOT_JSON, error.to_string()))
+        json::read(&bytes)
+            .map(Body)
+            .map_err(|error| Problem::new(Kind::NOT_JSON, error.to_string()))
     }
 }
 
@@ -26,8 +28,18 @@ fn accepted(headers: &HeaderMap) -> Result<(), Problem> {
     let essence = |value: &str| value.split(';').next().unwrap_or("").trim().to_ascii_lowercase();
     match text(header::CONTENT_TYPE).map(essence) {
         Some(kind) if kind == "application/json" || (kind.starts_with("application/") && kind.ends_with("+json")) => {}
-        Some(_) => return Err(Problem::new(Kind::MEDIA_TYPE, "the content type is not application/json")),
-        None => return Err(Problem::new(Kind::MEDIA_TYPE, "there is no Content-Type; send application/json")),
+        Some(_) => {
+            return Err(Problem::new(
+                Kind::MEDIA_TYPE,
+                "the content type is not application/json",
+            ));
+        }
+        None => {
+            return Err(Problem::new(
+                Kind::MEDIA_TYPE,
+                "there is no Content-Type; send application/json",
+            ));
+        }
     }
     match text(header::CONTENT_ENCODING) {
         None | Some("identity") => Ok(()),

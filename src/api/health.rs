@@ -34,7 +34,10 @@ impl Health {
 
 /// Documents the health routes; [`plain`] serves them, outside the bounds on load.
 pub(super) fn router() -> OpenApiRouter<AppState> {
-    let mut documented = OpenApiRouter::new().routes(routes!(live)).routes(routes!(ready)).routes(routes!(metrics));
+    let mut documented = OpenApiRouter::new()
+        .routes(routes!(live))
+        .routes(routes!(ready))
+        .routes(routes!(metrics));
     OpenApiRouter::with_openapi(documented.to_openapi())
 }
 

@@ -17,6 +17,7 @@ pub mod operating_point;
 pub mod policies;
 pub mod problem;
 pub mod serve;
+mod stall;
 pub mod sweep;
 pub mod worst_case;
 
@@ -47,7 +48,6 @@ impl AppState {
 }
 
 /// Every documented route, and the document.
-#[must_use]
 pub fn documented() -> (Router<AppState>, utoipa::openapi::OpenApi) {
     OpenApiRouter::with_openapi(openapi::base())
         .merge(operating_point::router())
@@ -62,7 +62,6 @@ pub fn documented() -> (Router<AppState>, utoipa::openapi::OpenApi) {
 }
 
 /// The whole service: API, documentation and page, behind the guards of [`guard`].
-#[must_use]
 pub fn service(state: AppState) -> Router {
     let (documented, document) = documented();
     let routes = documented

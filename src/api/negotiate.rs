@@ -7,14 +7,21 @@ pub(super) type Known<T> = (T, &'static str, &'static str);
 
 /// The best of the known representations for the `Accept` header; the first where there is none.
 pub(super) fn choose<T: Copy>(headers: &HeaderMap, known: &[Known<T>]) -> Option<T> {
-    let values: Vec<&str> = headers.get_all(header::ACCEPT).iter().filter_map(|v| v.to_str().ok()).collect();
+    let values: Vec<&str> = headers
+        .get_all(header::ACCEPT)
+        .iter()
+        .filter_map(|v| v.to_str().ok())
+        .collect();
     if values.is_empty() {
         return known.first().map(|k| k.0);
     }
     let ranges: Vec<(String, f64)> = values.iter().flat_map(|v| v.split(',')).filter_map(range).collect();
     let weight = |main: &str, sub: &str| {
         let of = |wanted: &str| ranges.iter().find(|(name, _)| name == wanted).map(|(_, q)| *q);
-        of(&format!("{main}/{sub}")).or_else(|| of(&format!("{main}/*"))).or_else(|| of("*/*")).unwrap_or(0.0)
+        of(&format!("{main}/{sub}"))
+            .or_else(|| of(&format!("{main}/*")))
+            .or_else(|| of("*/*"))
+            .unwrap_or(0.0)
     };
     // The first of equals wins.
     known
@@ -32,7 +39,9 @@ pub(super) fn choose<T: Copy>(headers: &HeaderMap, known: &[Known<T>]) -> Option
 fn range(text: &str) -> Option<(String, f64)> {
     let mut parts = text.split(';').map(str::trim);
     let name = parts.next().filter(|name| !name.is_empty())?.to_ascii_lowercase();
-    let weight = parts.find_map(|p| p.strip_prefix("q=")).map_or(Some(1.0), |q| q.trim().parse().ok())?;
+    let weight = parts
+        .find_map(|p| p.strip_prefix("q="))
+        .map_or(Some(1.0), |q| q.trim().parse().ok())?;
     Some((name, weight))
 }
 
@@ -40,7 +49,11 @@ fn range(text: &str) -> Option<(String, f64)> {
 mod tests {
     use super::*;
 
-    const KNOWN: [Known<u8>; 3] = [(0, "application", "json"), (1, "text", "csv"), (2, "application", "x-ndjson")];
+    const KNOWN: [Known<u8>; 3] = [
+        (0, "application", "json"),
+        (1, "text", "csv"),
+        (2, "application", "x-ndjson"),
+    ];
 
     fn chosen(accept: &str) -> Option<u8> {
         let mut headers = HeaderMap::new();

@@ -35,7 +35,10 @@ enum Format {
     Plot,
 }
 
-const FORMATS: [Known<Format>; 2] = [(Format::Json, "application", "json"), (Format::Plot, "image", "svg+xml")];
+const FORMATS: [Known<Format>; 2] = [
+    (Format::Json, "application", "json"),
+    (Format::Plot, "image", "svg+xml"),
+];
 
 /// The resource's routes.
 pub(super) fn router() -> OpenApiRouter<AppState> {
@@ -224,7 +227,9 @@ fn points(place: &Place<'_>, maximum: u64) -> Option<usize> {
 fn answer(supply: &Supply, point: app::OperatingPoint) -> OperatingPointAnswer {
     let mut cautions = answer::cautions();
     cautions.extend(dropouts(supply, &point));
-    let nameplate = supply.transformer().is_some_and(crate::supply::Transformer::is_nameplate);
+    let nameplate = supply
+        .transformer()
+        .is_some_and(crate::supply::Transformer::is_nameplate);
     OperatingPointAnswer {
         figures: Figures::from(&point.figures),
         waveforms: point.waveforms.map(Waveforms::from),
@@ -255,7 +260,12 @@ fn dropouts(supply: &Supply, point: &app::OperatingPoint) -> Vec<String> {
     let mut out = Vec::new();
     for (o, (output, figures)) in supply.outputs().iter().zip(&point.figures.outputs).enumerate() {
         for (r, (rail, figures)) in output.rails.iter().zip(&figures.rails).enumerate() {
-            if let Load::Regulator { output_voltage, dropout, .. } = &rail.load {
+            if let Load::Regulator {
+                output_voltage,
+                dropout,
+                ..
+            } = &rail.load
+            {
                 let least = output_voltage.nominal() + dropout.nominal();
                 let valley = figures.voltage.valley;
                 if valley < least {

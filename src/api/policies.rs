@@ -101,7 +101,10 @@ pub struct PolicyList {
     )
 )]
 async fn list() -> axum::Json<PolicyList> {
-    let policies = PUBLISHED.iter().filter_map(|name| published(name)).map(|p| PolicyAnswer::from(&p));
+    let policies = PUBLISHED
+        .iter()
+        .filter_map(|name| published(name))
+        .map(|p| PolicyAnswer::from(&p));
     axum::Json(PolicyList {
         policies: policies.collect(),
     })
@@ -123,7 +126,12 @@ async fn list() -> axum::Json<PolicyList> {
 async fn one(Path(name): Path<String>) -> Result<axum::Json<PolicyAnswer>, Problem> {
     published(&name)
         .map(|policy| axum::Json(PolicyAnswer::from(&policy)))
-        .ok_or_else(|| Problem::new(Kind::NOT_FOUND, "there is no policy of that name; /v1/policies lists them"))
+        .ok_or_else(|| {
+            Problem::new(
+                Kind::NOT_FOUND,
+                "there is no policy of that name; /v1/policies lists them",
+            )
+        })
 }
 
 /// A policy of one's own.
@@ -143,7 +151,10 @@ pub struct InlinePolicy {
 pub(super) fn named(place: &Place<'_>) -> Option<policy::Policy> {
     let found = published(place.text()?);
     if found.is_none() {
-        place.fault(format!("must be one of {}, or give inline_policy", PUBLISHED.join(", ")));
+        place.fault(format!(
+            "must be one of {}, or give inline_policy",
+            PUBLISHED.join(", ")
+        ));
     }
     found
 }
@@ -186,16 +197,23 @@ fn rules(place: &Place<'_>) -> Option<Vec<policy::Rule>> {
 
 fn rule(place: &Place<'_>) -> Option<policy::Rule> {
     let mut f = place.object()?;
-    let component = f.required("component").and_then(|p| p.word(&["diode", "capacitor", "transformer"]));
+    let component = f
+        .required("component")
+        .and_then(|p| p.word(&["diode", "capacitor", "transformer"]));
     let quantity = f.required("quantity");
     let factor = f.required("factor").and_then(|p| factor(&p));
     let source = f.required("source").and_then(|p| short(&p));
     f.finish("a rule");
     let component = component?;
-    let words: Vec<&'static str> =
-        Quantity::ALL.iter().filter(|q| q.component() == component).map(|q| q.name()).collect();
+    let words: Vec<&'static str> = Quantity::ALL
+        .iter()
+        .filter(|q| q.component() == component)
+        .map(|q| q.name())
+        .collect();
     let word = quantity?.word(&words)?;
-    let quantity = Quantity::ALL.into_iter().find(|q| q.component() == component && q.name() == word)?;
+    let quantity = Quantity::ALL
+        .into_iter()
+        .find(|q| q.component() == component && q.name() == word)?;
     Some(policy::Rule {
         quantity,
         factor: factor?,

@@ -126,14 +126,16 @@ impl Problem {
 /// A JSON Pointer with what a URI fragment may not hold escaped (RFC 6901, section 6).
 fn fragment(pointer: &str) -> String {
     let plain = |b: u8| b.is_ascii_alphanumeric() || b"-._~!$&'()*+,;=:@/?".contains(&b);
-    pointer.bytes().fold(String::with_capacity(pointer.len()), |mut text, byte| {
-        if plain(byte) {
-            text.push(char::from(byte));
-        } else {
-            text.push_str(&format!("%{byte:02X}"));
-        }
-        text
-    })
+    pointer
+        .bytes()
+        .fold(String::with_capacity(pointer.len()), |mut text, byte| {
+            if plain(byte) {
+                text.push(char::from(byte));
+            } else {
+                text.push_str(&format!("%{byte:02X}"));
+            }
+            text
+        })
 }
 
 impl From<AppError> for Problem {
@@ -155,7 +157,10 @@ impl IntoResponse for Problem {
         let body = serde_json::to_vec(&self).unwrap_or_default();
         let mut response = (status, body).into_response();
         let headers = response.headers_mut();
-        headers.insert(header::CONTENT_TYPE, HeaderValue::from_static("application/problem+json"));
+        headers.insert(
+            header::CONTENT_TYPE,
+            HeaderValue::from_static("application/problem+json"),
+        );
         if status == StatusCode::SERVICE_UNAVAILABLE {
             headers.insert(header::RETRY_AFTER, HeaderValue::from_static("2"));
         }
@@ -170,26 +175,26 @@ impl IntoResponse for Problem {
 pub enum BodyErrors {
     /// The body is not JSON.
     #[response(status = 400, content_type = "application/problem+json")]
-    NotJson(#[to_schema] Problem),
+    NotJson(Problem),
     /// The request took too long to arrive.
     #[response(status = 408, content_type = "application/problem+json")]
-    Timeout(#[to_schema] Problem),
+    Timeout(Problem),
     /// The body is too large.
     #[response(status = 413, content_type = "application/problem+json")]
-    TooLarge(#[to_schema] Problem),
+    TooLarge(Problem),
     /// The body is not sent as JSON.
     #[response(status = 415, content_type = "application/problem+json")]
-    MediaType(#[to_schema] Problem),
+    MediaType(Problem),
     /// The request cannot be understood (every fault with its pointer), or the circuit has no periodic solution (`type` ends in
     /// `/no-solution`).
     #[response(status = 422, content_type = "application/problem+json")]
-    Invalid(#[to_schema] Problem),
+    Invalid(Problem),
     /// The service failed.
     #[response(status = 500, content_type = "application/problem+json")]
-    Internal(#[to_schema] Problem),
+    Internal(Problem),
     /// The service is busy, or the answer took too long; try again after the seconds in `Retry-After`.
     #[response(status = 503, content_type = "application/problem+json")]
-    Overloaded(#[to_schema] Problem),
+    Overloaded(Problem),
 }
 
 /// The errors that every operation without a body may answer with.
@@ -197,10 +202,10 @@ pub enum BodyErrors {
 pub enum PlainErrors {
     /// The service failed.
     #[response(status = 500, content_type = "application/problem+json")]
-    Internal(#[to_schema] Problem),
+    Internal(Problem),
     /// The service is busy; try again after the seconds in `Retry-After`.
     #[response(status = 503, content_type = "application/problem+json")]
-    Overloaded(#[to_schema] Problem),
+    Overloaded(Problem),
 }
 
 /// Pages about the kinds of problem, at the addresses that `type` gives.

@@ -57,7 +57,9 @@ async fn worst_case(State(state): State<AppState>, body: Body) -> Result<axum::J
     let found = state.app.worst_case(supply).await?;
     let figures = found.figures.iter().zip(&found.extremes.ranges);
     Ok(axum::Json(WorstCaseAnswer {
-        figures: figures.map(|((pointer, figure), range)| answer::range(pointer, figure.unit, range)).collect(),
+        figures: figures
+            .map(|((pointer, figure), range)| answer::range(pointer, figure.unit, range))
+            .collect(),
         coverage: Coverage::from(&found.extremes),
         assumptions: answer::assumptions(),
         cautions: answer::cautions(),
@@ -67,7 +69,9 @@ async fn worst_case(State(state): State<AppState>, body: Body) -> Result<axum::J
 fn read(json: &Json, bands_maximum: usize) -> Result<Supply, Vec<Fault>> {
     let faults = Faults::default();
     let supply = Place::new(json, "", &faults).object().and_then(|mut f| {
-        let supply = f.required("supply").and_then(|place| banded(&place, bands_maximum, &faults));
+        let supply = f
+            .required("supply")
+            .and_then(|place| banded(&place, bands_maximum, &faults));
         f.finish("this request");
         supply
     });
@@ -79,7 +83,9 @@ pub(super) fn banded(place: &Place<'_>, maximum: usize, faults: &Faults) -> Opti
     let supply = request::supply(place, faults)?;
     let count = circuit_bands(&supply).len();
     if count > maximum {
-        place.fault(format!("has {count} uncertain quantities; at most {maximum} are taken (--bands-maximum)"));
+        place.fault(format!(
+            "has {count} uncertain quantities; at most {maximum} are taken (--bands-maximum)"
+        ));
         return None;
     }
     Some(supply)

@@ -13,7 +13,9 @@ pub(super) struct Compute {
 
 impl Compute {
     pub(super) fn new(places: usize) -> Result<Self, rayon::ThreadPoolBuildError> {
-        let pool = rayon::ThreadPoolBuilder::new().thread_name(|i| format!("compute-{i}")).build()?;
+        let pool = rayon::ThreadPoolBuilder::new()
+            .thread_name(|i| format!("compute-{i}"))
+            .build()?;
         Ok(Self {
             pool: Arc::new(pool),
             places: Arc::new(Semaphore::new(places.max(1))),
@@ -21,8 +23,14 @@ impl Compute {
     }
 
     /// Runs `work` on the cores, once there is a place; parallel iterators inside use all of them.
-    pub(super) async fn run<T: Send + 'static>(&self, work: impl FnOnce() -> T + Send + 'static) -> Result<T, AppError> {
-        let place = Arc::clone(&self.places).acquire_owned().await.map_err(|_| AppError::Lost)?;
+    pub(super) async fn run<T: Send + 'static>(
+        &self,
+        work: impl FnOnce() -> T + Send + 'static,
+    ) -> Result<T, AppError> {
+        let place = Arc::clone(&self.places)
+            .acquire_owned()
+            .await
+            .map_err(|_| AppError::Lost)?;
         let pool = Arc::clone(&self.pool);
         let task = tokio::task::spawn_blocking(move || {
             let _place = place;

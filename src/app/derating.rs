@@ -26,13 +26,24 @@ pub(super) fn surges(supply: &Supply, corners_maximum: usize) -> Result<Vec<(f64
     let extremes = survey(supply, corners_maximum, |point| -> Result<_, AppError> {
         Ok(switch_on_surge(&Network::of(point))?)
     })?;
-    Ok(extremes.ranges.into_iter().map(|range| (range.maximum, range.at_maximum)).collect())
+    Ok(extremes
+        .ranges
+        .into_iter()
+        .map(|range| (range.maximum, range.at_maximum))
+        .collect())
 }
 
 fn derate(supply: &Supply, policy: Policy, corners_maximum: usize) -> Result<Derated, AppError> {
     let worst = worst_case(supply, corners_maximum)?;
-    let wants_surge = policy.rules.iter().any(|rule| rule.quantity == Quantity::DiodeCurrentSurge);
-    let surges = if wants_surge { surges(supply, corners_maximum)? } else { Vec::new() };
+    let wants_surge = policy
+        .rules
+        .iter()
+        .any(|rule| rule.quantity == Quantity::DiodeCurrentSurge);
+    let surges = if wants_surge {
+        surges(supply, corners_maximum)?
+    } else {
+        Vec::new()
+    };
     let stress = |subject: &Subject| {
         if subject.figures.is_empty() {
             return surges.get(subject.output).cloned();

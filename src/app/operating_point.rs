@@ -62,7 +62,11 @@ impl App {
     #[must_use]
     pub fn figure_pointers(&self, supply: &Supply) -> Vec<(String, &'static str)> {
         let shape = Figures::shaped(&Network::of(supply));
-        shape.pointers().into_iter().map(|(pointer, figure)| (pointer, figure.unit)).collect()
+        shape
+            .pointers()
+            .into_iter()
+            .map(|(pointer, figure)| (pointer, figure.unit))
+            .collect()
     }
 
     /// Solves a supply without bands; `points` samples of one cycle where they are wanted.

@@ -116,7 +116,8 @@ impl Plan {
             }
             PlanKind::Random { seed, .. } => {
                 // Each sample has its own stream, so that a row does not depend on where the work was cut.
-                let mut random = rand_pcg::Pcg64::seed_from_u64(seed.wrapping_add(index.wrapping_mul(0x9e37_79b9_7f4a_7c15)));
+                let mut random =
+                    rand_pcg::Pcg64::seed_from_u64(seed.wrapping_add(index.wrapping_mul(0x9e37_79b9_7f4a_7c15)));
                 self.bands
                     .iter()
                     .map(|band| {
@@ -164,7 +165,12 @@ impl Plan {
         let row: Vec<f64> = self
             .columns
             .iter()
-            .map(|&column| inputs.get(column).copied().unwrap_or_else(|| values[column - inputs.len()]))
+            .map(|&column| {
+                inputs
+                    .get(column)
+                    .copied()
+                    .unwrap_or_else(|| values[column - inputs.len()])
+            })
             .collect();
         row.iter().all(|v| v.is_finite()).then_some(row)
     }
@@ -172,8 +178,10 @@ impl Plan {
     /// Solves one block, spread over the cores.
     fn block(&self, first: u64, last: u64) -> Rows {
         let starts: Vec<u64> = (first..last).step_by(RUN as usize).collect();
-        let runs: Vec<Vec<Option<Vec<f64>>>> =
-            starts.into_par_iter().map(|start| self.run(start, (start + RUN).min(last))).collect();
+        let runs: Vec<Vec<Option<Vec<f64>>>> = starts
+            .into_par_iter()
+            .map(|start| self.run(start, (start + RUN).min(last)))
+            .collect();
         Rows {
             rows: runs.into_iter().flatten().collect(),
         }

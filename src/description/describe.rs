@@ -4,8 +4,8 @@ use super::form;
 use super::quantities as q;
 use crate::quantity::Band;
 use crate::supply::{
-    Capacitor, Circuit, Diode, Line, Load, Output, Phases, Rail, Rectifier, Section, Supply, Surroundings, Transformer, Winding,
-    WindingValues,
+    Capacitor, Circuit, Diode, Line, Load, Output, Phases, Rail, Rectifier, Section, Supply, Surroundings, Transformer,
+    Winding, WindingValues,
 };
 
 /// The published form of a supply. It reads back to the same supply, bit for bit; what has its default is left out.

@@ -106,7 +106,8 @@ impl<'a> Place<'a> {
         };
         for (index, (key, _)) in entries.iter().enumerate() {
             if entries[..index].iter().any(|(other, _)| other == key) {
-                self.faults.note(format!("{}/{}", self.pointer, token(key)), "is given twice");
+                self.faults
+                    .note(format!("{}/{}", self.pointer, token(key)), "is given twice");
             }
         }
         Some(Fields {
@@ -125,7 +126,13 @@ impl<'a> Place<'a> {
             return None;
         };
         let at = |index: usize| format!("{}/{index}", self.pointer);
-        Some(items.iter().enumerate().map(|(i, json)| Place::new(json, at(i), self.faults)).collect())
+        Some(
+            items
+                .iter()
+                .enumerate()
+                .map(|(i, json)| Place::new(json, at(i), self.faults))
+                .collect(),
+        )
     }
 
     /// The string here.
@@ -172,11 +179,17 @@ impl<'a> Place<'a> {
             Json::String(text) => Some(text),
             Json::Number(_) => {
                 let (name, example) = (dimension.name(), dimension.example());
-                self.fault(format!("a bare number has no unit; write the {name} as text with its unit, for example \"{example}\""));
+                self.fault(format!(
+                    "a bare number has no unit; write the {name} as text with its unit, for example \"{example}\""
+                ));
                 None
             }
             _ => {
-                self.expected(&format!("a {} as text, for example \"{}\"", dimension.name(), dimension.example()));
+                self.expected(&format!(
+                    "a {} as text, for example \"{}\"",
+                    dimension.name(),
+                    dimension.example()
+                ));
                 None
             }
         }
@@ -186,14 +199,18 @@ impl<'a> Place<'a> {
     #[must_use]
     pub fn band(&self, dimension: Dimension) -> Option<Band> {
         let text = self.quantity_text(dimension)?;
-        read_band(text, dimension).map_err(|error| self.fault(error.to_string())).ok()
+        read_band(text, dimension)
+            .map_err(|error| self.fault(error.to_string()))
+            .ok()
     }
 
     /// The lone quantity here.
     #[must_use]
     pub fn quantity(&self, dimension: Dimension) -> Option<f64> {
         let text = self.quantity_text(dimension)?;
-        read_quantity(text, dimension).map_err(|error| self.fault(error.to_string())).ok()
+        read_quantity(text, dimension)
+            .map_err(|error| self.fault(error.to_string()))
+            .ok()
     }
 
     /// One of a list of words.
@@ -257,7 +274,6 @@ impl<'a> Fields<'a> {
     }
 
     /// A band that may be absent. The outer `None` means that what is there is faulty.
-    #[expect(clippy::option_option, reason = "absent and faulty are different answers")]
     pub fn band_if(&mut self, field: &'static str, dimension: Dimension) -> Option<Option<Band>> {
         match self.optional(field) {
             None => Some(None),
@@ -266,7 +282,12 @@ impl<'a> Fields<'a> {
     }
 
     /// A whole number with a default.
-    pub fn integer_or(&mut self, field: &'static str, range: std::ops::RangeInclusive<u64>, default: u64) -> Option<u64> {
+    pub fn integer_or(
+        &mut self,
+        field: &'static str,
+        range: std::ops::RangeInclusive<u64>,
+        default: u64,
+    ) -> Option<u64> {
         match self.optional(field) {
             None => Some(default),
             Some(place) => place.integer(range),

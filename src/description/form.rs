@@ -3,7 +3,8 @@
 //! These types are written out and documented; reading goes through [`super::read`], which finds every fault.
 
 use super::quantities::{
-    Angle, ApparentPower, Capacitance, Current, Frequency, Inductance, Life, Power, Ratio, Resistance, Temperature, Voltage,
+    Angle, ApparentPower, Capacitance, Current, Frequency, Inductance, Life, Power, Ratio, Resistance, Temperature,
+    Voltage,
 };
 use serde::Serialize;
 use utoipa::ToSchema;

@@ -122,7 +122,11 @@ impl<'de> Visitor<'de> for Seed {
     }
 
     fn visit_f64<E: serde::de::Error>(self, value: f64) -> Result<Json, E> {
-        if value.is_finite() { Ok(Json::Number(value)) } else { Err(E::custom("number out of range")) }
+        if value.is_finite() {
+            Ok(Json::Number(value))
+        } else {
+            Err(E::custom("number out of range"))
+        }
     }
 
     fn visit_str<E>(self, value: &str) -> Result<Json, E> {

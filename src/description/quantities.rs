@@ -28,7 +28,10 @@ fn schema(form: &Form) -> RefOr<Schema> {
     let width = match form.dimension {
         Dimension::Temperature => "[0-9]{1,3}(?:\\.[0-9]{1,20})? ?(?:K|%)".to_owned(),
         Dimension::Ratio => "[0-9]{1,3}(?:\\.[0-9]{1,20})? ?%".to_owned(),
-        _ => format!("(?:[0-9]{{1,3}}(?:\\.[0-9]{{1,20}})? ?%|[0-9]{{1,9}}(?:\\.[0-9]{{1,20}})? ?{})", form.units),
+        _ => format!(
+            "(?:[0-9]{{1,3}}(?:\\.[0-9]{{1,20}})? ?%|[0-9]{{1,9}}(?:\\.[0-9]{{1,20}})? ?{})",
+            form.units
+        ),
     };
     let tolerance = format!("(?:\u{b1}|\\+/-) ?{width}");
     let sided = format!("-{width} ?/ ?\\+{width}");

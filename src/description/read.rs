@@ -4,8 +4,8 @@ use super::fields::{Faults, Fields, Place};
 use super::json::Json;
 use crate::quantity::{Band, Dimension as D};
 use crate::supply::{
-    Capacitor, CapacitorRatings, Circuit, Diode, DiodeRatings, Fault, Harmonic, Line, Load, Output, Parts, Phases, Rail,
-    Rectifier, Section, Series, Supply, Surroundings, Transformer, Winding, WindingValues,
+    Capacitor, CapacitorRatings, Circuit, Diode, DiodeRatings, Fault, Harmonic, Line, Load, Output, Parts, Phases,
+    Rail, Rectifier, Section, Series, Supply, Surroundings, Transformer, Winding, WindingValues,
 };
 
 /// Reads a supply.
@@ -103,7 +103,9 @@ fn phases(place: &Place<'_>) -> Option<Phases> {
 
 fn harmonic(place: &Place<'_>) -> Option<Harmonic> {
     let mut f = place.object()?;
-    let order = f.required("order").and_then(|p| p.integer(2..=u64::from(crate::bounds::HARMONIC_ORDER_MAXIMUM)));
+    let order = f
+        .required("order")
+        .and_then(|p| p.integer(2..=u64::from(crate::bounds::HARMONIC_ORDER_MAXIMUM)));
     let fraction = f.band("fraction", D::Ratio);
     let phase = f.band_or("phase", D::Angle, Band::ZERO);
     f.finish("a harmonic");
@@ -161,7 +163,9 @@ fn winding(place: &Place<'_>) -> Option<Winding> {
             rated_current,
         },
         _ => {
-            place.fault("needs open_circuit_voltage and resistance, or rated_voltage and rated_current, and no other pair");
+            place.fault(
+                "needs open_circuit_voltage and resistance, or rated_voltage and rated_current, and no other pair",
+            );
             return None;
         }
     };
@@ -207,7 +211,6 @@ fn rectifier(place: &Place<'_>) -> Option<Rectifier> {
     })
 }
 
-#[expect(clippy::option_option, reason = "absent and faulty are different answers")]
 fn optional_capacitor(f: &mut Fields<'_>, field: &'static str) -> Option<Option<Capacitor>> {
     match f.optional(field) {
         None => Some(None),
@@ -330,11 +333,15 @@ pub fn load(place: &Place<'_>) -> Option<Load> {
     let mut f = place.object()?;
     let kind = f.required("kind");
     if let Some(place) = kind.as_ref().filter(|p| p.text() == Some("power")) {
-        place.fault("this version solves no constant-power loads yet; resistance, current, regulator and open are solved");
+        place.fault(
+            "this version solves no constant-power loads yet; resistance, current, regulator and open are solved",
+        );
         return None;
     }
     let load = match kind?.word(&["resistance", "current", "regulator", "open"])? {
-        "resistance" => f.band("resistance", D::Resistance).map(|resistance| Load::Resistance { resistance }),
+        "resistance" => f
+            .band("resistance", D::Resistance)
+            .map(|resistance| Load::Resistance { resistance }),
         "current" => f.band("current", D::Current).map(|current| Load::Current { current }),
         "regulator" => regulator(&mut f),
         _ => Some(Load::Open),

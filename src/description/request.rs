@@ -12,7 +12,8 @@ pub fn supply(place: &Place<'_>, faults: &Faults) -> Option<Supply> {
     match read_supply(place.json) {
         Ok(supply) => Some(supply),
         Err(list) => {
-            list.into_iter().for_each(|fault| faults.add(fault.below(&place.pointer)));
+            list.into_iter()
+                .for_each(|fault| faults.add(fault.below(&place.pointer)));
             None
         }
     }
@@ -52,14 +53,17 @@ pub fn at(place: &Place<'_>, supply: &Supply, faults: &Faults) -> Option<Supply>
     match collapsed.with(&values) {
         Ok(supply) => Some(supply),
         Err(list) => {
-            list.into_iter().for_each(|fault: Fault| faults.add(fault.below(&place.pointer)));
+            list.into_iter()
+                .for_each(|fault: Fault| faults.add(fault.below(&place.pointer)));
             None
         }
     }
 }
 
 fn chosen(text: &str, dimension: crate::quantity::Dimension, band: &Band) -> Result<Band, String> {
-    let end = [End::Low, End::Nominal, End::High].into_iter().find(|end| end.as_str() == text);
+    let end = [End::Low, End::Nominal, End::High]
+        .into_iter()
+        .find(|end| end.as_str() == text);
     if let Some(end) = end {
         return Ok(band.collapsed(end));
     }

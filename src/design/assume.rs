@@ -30,7 +30,12 @@ impl Default for Assumptions {
         let point = |rating, regulation| RegulationPoint { rating, regulation };
         Self {
             // Common practice for small mains transformers: near 0.4 (S / 1 VA)^-0.3.
-            regulation: vec![point(1.0, 0.40), point(10.0, 0.20), point(100.0, 0.10), point(1000.0, 0.05)],
+            regulation: vec![
+                point(1.0, 0.40),
+                point(10.0, 0.20),
+                point(100.0, 0.10),
+                point(1000.0, 0.05),
+            ],
             // A silicon diode of a few amperes; common practice.
             diode: Diode {
                 threshold_voltage: Band::exactly(0.8),

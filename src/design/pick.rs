@@ -8,14 +8,19 @@ use crate::supply::Supply;
 use crate::worst_case::Attained;
 
 /// Rated voltages of electrolytic capacitors in volts; common practice, after IEC 60063's R5 and R10 steps.
-const CAPACITOR_VOLTAGES: [f64; 15] = [6.3, 10.0, 16.0, 25.0, 35.0, 50.0, 63.0, 80.0, 100.0, 160.0, 200.0, 250.0, 350.0, 400.0, 450.0];
+const CAPACITOR_VOLTAGES: [f64; 15] = [
+    6.3, 10.0, 16.0, 25.0, 35.0, 50.0, 63.0, 80.0, 100.0, 160.0, 200.0, 250.0, 350.0, 400.0, 450.0,
+];
 /// Repetitive reverse voltages of rectifier diodes in volts; common practice.
 const REVERSE_VOLTAGES: [f64; 9] = [50.0, 100.0, 200.0, 400.0, 600.0, 800.0, 1000.0, 1200.0, 1600.0];
 /// Mean forward currents of rectifier diodes in amperes; common practice.
-const MEAN_CURRENTS: [f64; 15] = [0.5, 1.0, 1.5, 2.0, 3.0, 4.0, 6.0, 8.0, 10.0, 15.0, 25.0, 35.0, 50.0, 80.0, 100.0];
+const MEAN_CURRENTS: [f64; 15] = [
+    0.5, 1.0, 1.5, 2.0, 3.0, 4.0, 6.0, 8.0, 10.0, 15.0, 25.0, 35.0, 50.0, 80.0, 100.0,
+];
 /// Preferred fuse ratings of IEC 60127 in amperes (from memory).
 const FUSES: [f64; 24] = [
-    0.032, 0.04, 0.05, 0.063, 0.08, 0.1, 0.125, 0.16, 0.2, 0.25, 0.315, 0.4, 0.5, 0.63, 0.8, 1.0, 1.25, 1.6, 2.0, 2.5, 3.15, 4.0, 5.0, 6.3,
+    0.032, 0.04, 0.05, 0.063, 0.08, 0.1, 0.125, 0.16, 0.2, 0.25, 0.315, 0.4, 0.5, 0.63, 0.8, 1.0, 1.25, 1.6, 2.0, 2.5,
+    3.15, 4.0, 5.0, 6.3,
 ];
 /// Part of its rating that a fuse carries in continuous duty: the habit for fuses rated to open at 1.35 times (UL 248-14), safe for
 /// those that must hold 1.5 times for an hour (IEC 60127).
@@ -65,7 +70,11 @@ pub(super) fn ratings(
             continue;
         }
         let Some((value, at)) = stress(&subject) else { continue };
-        let factor = policy.rules.iter().find(|r| r.quantity == subject.quantity).map_or(1.0, |r| r.factor);
+        let factor = policy
+            .rules
+            .iter()
+            .find(|r| r.quantity == subject.quantity)
+            .map_or(1.0, |r| r.factor);
         let required = value / factor;
         let (list, source): (&[f64], _) = match subject.quantity {
             Quantity::DiodeReverseVoltage => (&REVERSE_VOLTAGES, "preferred reverse voltages, common practice"),
@@ -120,9 +129,30 @@ pub(super) fn transformer(plate: Nameplate, exact: Nameplate, valley: &[Attained
             valley,
             "lowest winding voltage, of each half of a tap, that holds the valley at the worst corner",
         ),
-        pick("rated_voltage", exact.voltage, plate.voltage, "V", valley, "the same at rated current"),
-        pick("apparent_power", exact.rating, plate.rating, "VA", current, "rated voltage times the largest rms winding current; R10 step of ISO 3"),
-        pick("regulation", exact.regulation, plate.regulation, "1", current, "assumed relation of regulation to rating"),
+        pick(
+            "rated_voltage",
+            exact.voltage,
+            plate.voltage,
+            "V",
+            valley,
+            "the same at rated current",
+        ),
+        pick(
+            "apparent_power",
+            exact.rating,
+            plate.rating,
+            "VA",
+            current,
+            "rated voltage times the largest rms winding current; R10 step of ISO 3",
+        ),
+        pick(
+            "regulation",
+            exact.regulation,
+            plate.regulation,
+            "1",
+            current,
+            "assumed relation of regulation to rating",
+        ),
     ]
 }
 

@@ -7,7 +7,7 @@ use crate::figures::Figures;
 use crate::policy::{Check, Policy, Subject, Whole, check, subjects};
 use crate::quantity::{Band, Series};
 use crate::supply::{Circuit, Supply};
-use crate::worst_case::{Attained, Extremes};
+use crate::worst_case::{Attained, Extremes, Range};
 
 /// Capacitances tried for one circuit.
 const CAPACITANCES_MAXIMUM: usize = 12;
@@ -157,7 +157,10 @@ fn capacitances(need: &Need, circuit: Circuit) -> Vec<f64> {
     let frequency = pulses * need.line.frequency.nominal();
     let rail = need.rails.iter().map(|rail| {
         let current = load_current(&rail.load, rail.valley_min).max(1e-6);
-        let largest = rail.ripple_pp_max.unwrap_or(f64::INFINITY).min(RIPPLE.1 * rail.valley_min);
+        let largest = rail
+            .ripple_pp_max
+            .unwrap_or(f64::INFINITY)
+            .min(RIPPLE.1 * rail.valley_min);
         let smallest = (0.3 * largest).min(RIPPLE.0 * rail.valley_min);
         (current / (frequency * largest), current / (frequency * smallest))
     });
@@ -174,20 +177,65 @@ fn one<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
     surge: &impl Fn(&Supply) -> Result<Vec<(f64, Vec<Attained>)>, E>,
 ) -> Result<Verdict, E> {
     let unsized_miss = || Verdict::Rejected("no winding voltage holds the valley".to_owned(), None);
-    let Some(first) = sizing.supply(sizing.plate(10.0, 1.0)) else { return Ok(unsized_miss()) };
+    let Some(first) = sizing.supply(sizing.plate(10.0, 1.0)) else {
+        return Ok(unsized_miss());
+    };
     let figures = solve(&first.at_ends(|_| None))?;
-    let Some(exact) = sizing.size(&Places::of(&figures))? else { return Ok(unsized_miss()) };
+    let Some(exact) = sizing.size(&Places::of(&figures))? else {
+        return Ok(unsized_miss());
+    };
     let plate = rounded(sizing, exact);
-    let Some(supply) = sizing.supply(plate) else { return Ok(unsized_miss()) };
+    let Some(supply) = sizing.supply(plate) else {
+        return Ok(unsized_miss());
+    };
     let extremes = sizing.extremes(&supply)?;
-    let pointers: Vec<(String, &'static str)> =
-        figures.pointers().into_iter().map(|(pointer, figure)| (pointer, figure.unit)).collect();
+    let pointers: Vec<(String, &'static str)> = figures
+        .pointers()
+        .into_iter()
+        .map(|(pointer, figure)| (pointer, figure.unit))
+        .collect();
     if let Some(rejected) = misses(sizing, &extremes, &pointers) {
         return Ok(rejected);
     }
-    let surges = surge(&supply)?;
-    let stress = |subject: &Subject| worst_stress(subject, &extremes, &pointers, &surges);
-    let mut picks = match pick::ratings(&supply, policy, stress) {
+    let sized = Sized {
+        exact,
+        plate,
+        surges: surge(&supply)?,
+        supply,
+        extremes,
+        pointers,
+    };
+    Ok(completed(sizing, policy, sized))
+}
+
+/// A supply that holds, its parts not rated yet.
+struct Sized {
+    exact: Nameplate,
+    plate: Nameplate,
+    supply: Supply,
+    surges: Vec<(f64, Vec<Attained>)>,
+    extremes: Extremes,
+    pointers: Vec<(String, &'static str)>,
+}
+
+impl Sized {
+    fn range(&self, wanted: &str) -> Option<&Range> {
+        let index = self.pointers.iter().position(|(pointer, _)| pointer == wanted)?;
+        self.extremes.ranges.get(index)
+    }
+
+    fn stress(&self, subject: &Subject) -> Option<(f64, Vec<Attained>)> {
+        worst_stress(subject, &self.extremes, &self.pointers, &self.surges)
+    }
+}
+
+/// Rates the parts of a supply that holds and checks them.
+fn completed<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
+    sizing: &Sizing<'_, Solve>,
+    policy: &Policy,
+    sized: Sized,
+) -> Verdict {
+    let mut ratings = match pick::ratings(&sized.supply, policy, |subject| sized.stress(subject)) {
         Ok(picks) => picks,
         Err(missing) => {
             let miss = Miss {
@@ -197,37 +245,41 @@ fn one<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
                 limit: missing.largest,
                 unit: missing.unit,
             };
-            return Ok(Verdict::Rejected(format!("no preferred {} reaches it", missing.quantity), Some(miss)));
+            return Verdict::Rejected(format!("no preferred {} reaches it", missing.quantity), Some(miss));
         }
     };
-    let find = |wanted: &str| pointers.iter().position(|(p, _)| p == wanted).map(|i| &extremes.ranges[i]);
-    let at = |wanted: &str, low: bool| find(wanted).map(|r| if low { r.at_minimum.clone() } else { r.at_maximum.clone() }).unwrap_or_default();
-    let mut all = pick::transformer(
-        plate,
-        exact,
-        &at("/outputs/0/rails/0/voltage/valley", true),
-        &at("/outputs/0/winding/current_rms", false),
+    let valley = sized
+        .range("/outputs/0/rails/0/voltage/valley")
+        .map(|r| r.at_minimum.clone());
+    let current = sized
+        .range("/outputs/0/winding/current_rms")
+        .map(|r| r.at_maximum.clone());
+    let mut picks = pick::transformer(
+        sized.plate,
+        sized.exact,
+        &valley.unwrap_or_default(),
+        &current.unwrap_or_default(),
     );
-    all.push(capacitance_pick(sizing.capacitance));
-    all.append(&mut picks);
-    if let Some(range) = find("/line/current_rms") {
-        all.push(pick::fuse(sizing.need, range.maximum, range.at_maximum.clone()));
+    picks.push(capacitance_pick(sizing.capacitance));
+    picks.append(&mut ratings);
+    if let Some(range) = sized.range("/line/current_rms") {
+        picks.push(pick::fuse(sizing.need, range.maximum, range.at_maximum.clone()));
     }
-    let supply = rated(&supply, &all);
-    let (checks, verdict) = check(policy, &subjects(&supply), |subject| worst_stress(subject, &extremes, &pointers, &surges));
+    let supply = rated(&sized.supply, &picks);
+    let (checks, verdict) = check(policy, &subjects(&supply), |subject| sized.stress(subject));
     let score = match sizing.need.minimise {
-        Minimise::Loss => find("/losses/total").map_or(f64::INFINITY, |r| r.maximum),
-        Minimise::Volume => volume(&supply, plate),
+        Minimise::Loss => sized.range("/losses/total").map_or(f64::INFINITY, |r| r.maximum),
+        Minimise::Volume => volume(&supply, sized.plate),
     };
-    Ok(Verdict::Holds(Box::new(Candidate {
+    Verdict::Holds(Box::new(Candidate {
         supply,
-        picks: all,
-        worst_case: extremes,
-        pointers,
+        picks,
+        worst_case: sized.extremes,
+        pointers: sized.pointers,
         checks,
         verdict,
         score,
-    })))
+    }))
 }
 
 fn capacitance_pick(capacitance: f64) -> Pick {
@@ -248,9 +300,16 @@ fn capacitance_pick(capacitance: f64) -> Pick {
 const R10: [f64; 10] = [1.0, 1.25, 1.6, 2.0, 2.5, 3.15, 4.0, 5.0, 6.3, 8.0];
 
 /// A nameplate one can order: voltage up to a tenth of a volt (three digits), rating up to the next R10 step.
-fn rounded<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(sizing: &Sizing<'_, Solve>, exact: Nameplate) -> Nameplate {
+fn rounded<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
+    sizing: &Sizing<'_, Solve>,
+    exact: Nameplate,
+) -> Nameplate {
     let decade = 10.0_f64.powf(exact.rating.log10().floor());
-    let rating = R10.iter().map(|step| step * decade).find(|v| *v >= exact.rating * (1.0 - 1e-9)).unwrap_or(10.0 * decade);
+    let rating = R10
+        .iter()
+        .map(|step| step * decade)
+        .find(|v| *v >= exact.rating * (1.0 - 1e-9))
+        .unwrap_or(10.0 * decade);
     let steps = 10.0_f64.powf(exact.voltage.log10().floor() - 2.0).max(1e-9);
     // A larger transformer sags less, so that the voltage found for the exact rating holds for it too.
     let voltage = (exact.voltage / steps - 1e-9).ceil() * steps;
@@ -271,12 +330,25 @@ fn misses<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
     for (index, rail) in sizing.need.rails.iter().enumerate() {
         let range = |field: &str| {
             let wanted = format!("/outputs/0/rails/{index}/voltage/{field}");
-            pointers.iter().position(|(p, _)| *p == wanted).map(|i| &extremes.ranges[i])
+            pointers
+                .iter()
+                .position(|(p, _)| *p == wanted)
+                .map(|i| &extremes.ranges[i])
         };
         let limits = [
-            ("valley_min", range("valley").map(|r| r.minimum), Some(rail.valley_min), false),
+            (
+                "valley_min",
+                range("valley").map(|r| r.minimum),
+                Some(rail.valley_min),
+                false,
+            ),
             ("crest_max", range("crest").map(|r| r.maximum), rail.crest_max, true),
-            ("ripple_pp_max", range("ripple_pp").map(|r| r.maximum), rail.ripple_pp_max, true),
+            (
+                "ripple_pp_max",
+                range("ripple_pp").map(|r| r.maximum),
+                rail.ripple_pp_max,
+                true,
+            ),
         ];
         for (name, value, limit, upper) in limits {
             if let (Some(value), Some(limit)) = (value, limit)
@@ -319,7 +391,9 @@ pub(super) fn worst_stress(
 fn rated(supply: &Supply, picks: &[Pick]) -> Supply {
     let mut parts = supply.clone().into_parts();
     let value = |component: &str, quantity: &str| {
-        let pick = picks.iter().filter(|p| p.component == component && p.quantity == quantity);
+        let pick = picks
+            .iter()
+            .filter(|p| p.component == component && p.quantity == quantity);
         let most = pick.map(|p| p.chosen.unwrap_or(p.required)).fold(0.0_f64, f64::max);
         Band::point(most).ok().filter(|b| b.nominal() > 0.0)
     };
@@ -346,7 +420,12 @@ fn rated(supply: &Supply, picks: &[Pick]) -> Supply {
 /// An estimate in cubic centimetres: 10 (S / 1 VA)^0.75 for the transformer and, for each capacitor, twice its stored energy at rated
 /// voltage in joules; common practice, good for ranking alone.
 fn volume(supply: &Supply, plate: Nameplate) -> f64 {
-    let capacitors = supply.outputs().iter().flat_map(|o| &o.rails).flat_map(|r| &r.filter).filter_map(|s| s.capacitor.as_ref());
+    let capacitors = supply
+        .outputs()
+        .iter()
+        .flat_map(|o| &o.rails)
+        .flat_map(|r| &r.filter)
+        .filter_map(|s| s.capacitor.as_ref());
     let energy: f64 = capacitors
         .map(|c| {
             let volts = c.ratings.voltage.map_or(0.0, |v| v.nominal());

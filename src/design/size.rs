@@ -2,10 +2,10 @@
 
 use super::Need;
 use crate::figures::Figures;
-use crate::quantity::Band;
+use crate::quantity::{Band, Dimension, read_band, write_quantity};
 use crate::supply::{
-    Capacitor, CapacitorRatings, Circuit, Diode, DiodeRatings, Load, Output, Parts, Phases, Rail, Rectifier, Section, Supply, Transformer,
-    Winding, WindingValues,
+    Capacitor, CapacitorRatings, Circuit, Diode, DiodeRatings, Load, Output, Parts, Phases, Rail, Rectifier, Section,
+    Supply, Transformer, Winding, WindingValues,
 };
 use crate::worst_case::{Corners, Extremes, survey};
 
@@ -55,10 +55,9 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
         let three = need.line.phases == Phases::Three;
         let pulses = if self.circuit == Circuit::HalfWave { 1.0 } else { 2.0 };
         let ripple = pulses * if three { 3.0 } else { 1.0 } * need.line.frequency.nominal();
-        let tolerance = need.assumptions.capacitance_tolerance;
         let nominal = self.capacitance;
         let capacitor = Capacitor {
-            capacitance: Band::new(nominal * (1.0 - tolerance), nominal, nominal * (1.0 + tolerance)).ok()?,
+            capacitance: toleranced(nominal, need.assumptions.capacitance_tolerance)?,
             esr: Band::point(need.assumptions.loss_factor / (std::f64::consts::TAU * ripple * nominal)).ok()?,
             count: 1,
             ratings: CapacitorRatings::default(),
@@ -117,8 +116,10 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
         use rayon::prelude::*;
         let corners = Corners::of(supply);
         let count = corners.count().unwrap_or(usize::MAX).min(self.corners_maximum);
-        let rows: Vec<Result<Vec<f64>, E>> =
-            (0..count).into_par_iter().map(|index| (self.solve)(&corners.at(&corners.values(index)))).collect();
+        let rows: Vec<Result<Vec<f64>, E>> = (0..count)
+            .into_par_iter()
+            .map(|index| (self.solve)(&corners.at(&corners.values(index))))
+            .collect();
         let mut margin = f64::INFINITY;
         let mut current = 0.0_f64;
         for row in rows {
@@ -133,7 +134,12 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
 
     /// The transformer that just holds the valley at the worst corner; `None` where the search does not end.
     pub(super) fn size(&self, places: &Places) -> Result<Option<Nameplate>, E> {
-        let direct: f64 = self.need.rails.iter().map(|r| load_current(&r.load, r.valley_min)).sum();
+        let direct: f64 = self
+            .need
+            .rails
+            .iter()
+            .map(|r| load_current(&r.load, r.valley_min))
+            .sum();
         let crowding = match self.circuit {
             Circuit::HalfWave => 2.4,
             Circuit::CentreTap => 1.3,
@@ -185,7 +191,9 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
                 None => Ok(None),
             }
         };
-        let Some(mut at_low) = margin(first)? else { return Ok(None) };
+        let Some(mut at_low) = margin(first)? else {
+            return Ok(None);
+        };
         let (mut low, mut high, mut at_high) = (first, first, at_low);
         for _ in 0..VOLTAGE_STEPS {
             if at_low.0 <= 0.0 && at_high.0 >= 0.0 {
@@ -212,7 +220,11 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
                 break;
             }
             let next = (high * f_low - low * f_high) / (f_low - f_high);
-            let next = if next > low && next < high { next } else { 0.5 * (low + high) };
+            let next = if next > low && next < high {
+                next
+            } else {
+                0.5 * (low + high)
+            };
             let Some(found) = margin(next)? else { return Ok(None) };
             if found.0 >= 0.0 {
                 (high, at_high) = (next, found);
@@ -229,6 +241,15 @@ impl<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync> Sizing<'_, Solve
         }
         Ok(Some((high, at_high.1)))
     }
+}
+
+/// A capacitance with its tolerance, as its text reads: the same band whether it is computed here or read back.
+fn toleranced(farads: f64, tolerance: f64) -> Option<Band> {
+    let (nominal, width) = (
+        write_quantity(farads, Dimension::Capacitance),
+        write_quantity(tolerance, Dimension::Ratio),
+    );
+    read_band(&format!("{nominal} \u{b1}{width}"), Dimension::Capacitance).ok()
 }
 
 /// Where the figures that sizing reads stand among the values.

@@ -98,8 +98,16 @@ fn plan(network: &Network) -> (Reading, Places) {
         .zip(&probes.line_voltages)
         .map(|(current, voltage)| pair(&mut reading, current, voltage, (true, false)))
         .collect();
-    let outputs = probes.outputs.iter().map(|o| plan_output(network, o, &mut reading)).collect();
-    let primary = probes.primary_currents.iter().map(|s| reading.signal(s, false)).collect();
+    let outputs = probes
+        .outputs
+        .iter()
+        .map(|o| plan_output(network, o, &mut reading))
+        .collect();
+    let primary = probes
+        .primary_currents
+        .iter()
+        .map(|s| reading.signal(s, false))
+        .collect();
     let core = probes
         .core_resistors
         .iter()
@@ -180,7 +188,11 @@ fn gather(network: &Network, periodic: &Periodic<'_>, reading: &Reading) -> Tota
     for flow in &periodic.run.flows {
         let regime = periodic.regimes.get(flow.regime);
         if !rows.iter().any(|(index, _)| *index == flow.regime) {
-            let modal = reading.signals.iter().map(|s| regime.modal(&regime.signal(s))).collect();
+            let modal = reading
+                .signals
+                .iter()
+                .map(|s| regime.modal(&regime.signal(s)))
+                .collect();
             rows.push((flow.regime, modal));
         }
         if let Some((_, modal)) = rows.iter().find(|(index, _)| *index == flow.regime) {
@@ -358,7 +370,12 @@ fn line(network: &Network, places: &Places, totals: &Totals, figures: &mut Figur
         transformer: primary + copper(network, figures) + core,
         rectifiers: figures.outputs.iter().flat_map(|o| &o.diodes).map(|d| d.loss).sum(),
         capacitors: figures.outputs.iter().flat_map(|o| &o.capacitors).map(|c| c.loss).sum(),
-        filters: places.outputs.iter().flat_map(|o| &o.filters).map(|&p| totals.product(p)).sum(),
+        filters: places
+            .outputs
+            .iter()
+            .flat_map(|o| &o.filters)
+            .map(|&p| totals.product(p))
+            .sum(),
     };
     losses.total = losses.line + losses.transformer + losses.rectifiers + losses.capacitors + losses.filters;
     let load: f64 = figures.outputs.iter().flat_map(|o| &o.rails).map(|r| r.power).sum();

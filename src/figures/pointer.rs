@@ -90,7 +90,11 @@ impl Figures {
 
 fn place(figure: &Figure, output: usize, mark: &str, index: usize) -> String {
     let pointer = figure.pointer.replace("{output}", &output.to_string());
-    if mark.is_empty() { pointer } else { pointer.replace(mark, &index.to_string()) }
+    if mark.is_empty() {
+        pointer
+    } else {
+        pointer.replace(mark, &index.to_string())
+    }
 }
 
 impl OutputFigures {

@@ -21,7 +21,12 @@ pub struct Waveforms {
 #[must_use]
 pub fn waveforms(network: &Network, periodic: &Periodic<'_>, points: usize) -> Waveforms {
     let probes = &network.probes;
-    let rails: Vec<&Signal> = probes.outputs.iter().flat_map(|o| &o.rails).map(|r| &r.voltage).collect();
+    let rails: Vec<&Signal> = probes
+        .outputs
+        .iter()
+        .flat_map(|o| &o.rails)
+        .map(|r| &r.voltage)
+        .collect();
     let currents: Vec<Signal> = probes
         .outputs
         .iter()

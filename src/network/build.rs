@@ -68,12 +68,20 @@ impl Builder {
     /// Elements in series from `from` to `to`, with a winding in series where `turns` is given; the branches' indices.
     /// At least one branch is laid: a wire where nothing else is there.
     pub(super) fn series(&mut self, from: Node, to: Node, turns: Option<Turns>, elements: Vec<Element>) -> Vec<usize> {
-        let elements = if elements.is_empty() { vec![Element::Wire] } else { elements };
+        let elements = if elements.is_empty() {
+            vec![Element::Wire]
+        } else {
+            elements
+        };
         let last = elements.len() - 1;
         let mut here = from;
         let mut laid = Vec::with_capacity(elements.len());
         for (index, element) in elements.into_iter().enumerate() {
-            let (next, winding) = if index == last { (to, turns) } else { (self.node(), None) };
+            let (next, winding) = if index == last {
+                (to, turns)
+            } else {
+                (self.node(), None)
+            };
             laid.push(self.wound(here, next, winding, element));
             here = next;
         }

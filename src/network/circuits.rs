@@ -225,7 +225,9 @@ impl Wiring {
             self.lay_line(supply, phase, (star, star), (resistance, inductance), Some((core, 1.0)));
             if transformer.core_loss > 0.0 {
                 let ohms = transformer.primary_voltage.powi(2) / transformer.core_loss;
-                let laid = self.builder.wound(star, star, Some((core, 1.0)), Element::Resistor(ohms));
+                let laid = self
+                    .builder
+                    .wound(star, star, Some((core, 1.0)), Element::Resistor(ohms));
                 self.mirror.reversed(laid);
                 self.probes.core_resistors.push(laid);
             }

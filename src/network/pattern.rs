@@ -96,7 +96,11 @@ pub(super) fn topology(network: &Network, conducting: u64) -> Topology {
     let mut used = vec![false; network.rows];
     for &(class, branch) in &order {
         let mut pivot = None;
-        let mut largest = RANK_TOLERANCE * network.branches[branch].column.iter().fold(0.0_f64, |m, c| m.max(c.1.abs()));
+        let mut largest = RANK_TOLERANCE
+            * network.branches[branch]
+                .column
+                .iter()
+                .fold(0.0_f64, |m, c| m.max(c.1.abs()));
         for row in 0..network.rows {
             if !used[row] && k[(row, branch)].abs() > largest {
                 largest = k[(row, branch)].abs();
@@ -135,7 +139,11 @@ fn eliminate(k: &mut DMatrix<f64>, row: usize, column: usize) {
             let change = factor * k[(row, c)];
             let sum = k[(other, c)] - change;
             // What cancels to rounding is zero in the graph and must stay so, or it would be taken for a pivot.
-            k[(other, c)] = if sum.abs() <= RANK_TOLERANCE * change.abs() { 0.0 } else { sum };
+            k[(other, c)] = if sum.abs() <= RANK_TOLERANCE * change.abs() {
+                0.0
+            } else {
+                sum
+            };
         }
     }
 }

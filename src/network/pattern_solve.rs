@@ -167,7 +167,10 @@ impl Reduction<'_> {
         let own = self.offsets(&closing);
         let found = self.loop_voltages(SHORT, &[SHORT]);
         let scale = self.network.voltage_scale;
-        if (&own - &found).iter().any(|difference| difference.abs() > 1e-12 * scale) {
+        if (&own - &found)
+            .iter()
+            .any(|difference| difference.abs() > 1e-12 * scale)
+        {
             return Err(Unsolvable::ShortedSource);
         }
         self.put_voltages(&closing, &own);
@@ -292,9 +295,14 @@ impl Reduction<'_> {
         let capacitors = capacitor_rates.nrows();
         let mut rate = Rows::zeros(self.states, self.width);
         rate.rows_mut(0, capacitors).copy_from(capacitor_rates);
-        rate.rows_mut(capacitors, inductor_rates.nrows()).copy_from(inductor_rates);
+        rate.rows_mut(capacitors, inductor_rates.nrows())
+            .copy_from(inductor_rates);
         let masses = capacitor_mass.diagonal();
-        let weight = masses.iter().chain(inductor_mass.diagonal().iter()).map(|m| m.sqrt()).collect();
+        let weight = masses
+            .iter()
+            .chain(inductor_mass.diagonal().iter())
+            .map(|m| m.sqrt())
+            .collect();
         let network = self.network;
         let mut expand = Rows::zeros(network.full_state(), self.width);
         for (index, &branch) in network.capacitors.iter().enumerate() {
@@ -327,7 +335,9 @@ impl Reduction<'_> {
         let stored = |branch: usize| {
             let capacitors = network.capacitors.iter().position(|&b| b == branch);
             let inductors = network.inductors.iter().position(|&b| b == branch);
-            capacitors.or(inductors.map(|i| i + network.capacitors.len())).unwrap_or(0)
+            capacitors
+                .or(inductors.map(|i| i + network.capacitors.len()))
+                .unwrap_or(0)
         };
         let select = |branches: &[usize]| {
             let mut rows = Rows::zeros(branches.len(), width);
@@ -349,8 +359,7 @@ impl Reduction<'_> {
         let f = self.block(INDUCTOR, INDUCTOR);
         let forced = self.block(INDUCTOR, SOURCE) * widen(&self.currents(self.links(SOURCE)));
         let tree = self.tree(INDUCTOR);
-        let flux =
-            select(self.links(INDUCTOR)) - f.transpose() * (select(tree) + self.diagonal(tree) * forced);
+        let flux = select(self.links(INDUCTOR)) - f.transpose() * (select(tree) + self.diagonal(tree) * forced);
         let mut contract = Rows::zeros(self.states, width);
         let capacitors = charge.nrows();
         contract

@@ -49,7 +49,10 @@ async fn file(Path(name): Path<String>, headers: HeaderMap) -> Response {
 /// A file, or the word that the client's copy is still good.
 fn sent(file: &File, headers: &HeaderMap) -> Response {
     let tag = format!("\"{}-{:016x}\"", env!("CARGO_PKG_VERSION"), hash(file.text));
-    let known = headers.get(header::IF_NONE_MATCH).and_then(|v| v.to_str().ok()).is_some_and(|v| v.contains(&tag));
+    let known = headers
+        .get(header::IF_NONE_MATCH)
+        .and_then(|v| v.to_str().ok())
+        .is_some_and(|v| v.contains(&tag));
     let mut response = if known {
         StatusCode::NOT_MODIFIED.into_response()
     } else {

@@ -15,7 +15,12 @@ const SIZE: (u32, u32) = (720, 640);
 /// Drawn this much larger.
 const SCALE: u32 = 10;
 /// Okabe-Ito colours of at least 3:1 on white.
-const PALETTE: [RGBColor; 4] = [RGBColor(0, 114, 178), RGBColor(213, 94, 0), RGBColor(0, 158, 115), RGBColor(204, 121, 167)];
+const PALETTE: [RGBColor; 4] = [
+    RGBColor(0, 114, 178),
+    RGBColor(213, 94, 0),
+    RGBColor(0, 158, 115),
+    RGBColor(204, 121, 167),
+];
 /// Most lines of one panel.
 const LINES_MAXIMUM: usize = 4;
 /// Two lines this near, relative to the larger, are drawn once.
@@ -70,9 +75,18 @@ pub fn waveforms(name: &str, waves: &Waveforms) -> Result<String, PlotError> {
 fn distinct<'a>(prefix: &str, all: &'a [Vec<f64>]) -> Vec<Line<'a>> {
     let mut lines: Vec<Line<'a>> = Vec::new();
     for (index, values) in all.iter().enumerate() {
-        let name = if prefix == "rail" { format!("rail {index}") } else { format!("{prefix}{}", index + 1) };
+        let name = if prefix == "rail" {
+            format!("rail {index}")
+        } else {
+            format!("{prefix}{}", index + 1)
+        };
         let size = values.iter().fold(0.0_f64, |m, v| m.max(v.abs()));
-        let same = |line: &Line<'_>| line.values.iter().zip(values).all(|(a, b)| (a - b).abs() <= SAME * size);
+        let same = |line: &Line<'_>| {
+            line.values
+                .iter()
+                .zip(values)
+                .all(|(a, b)| (a - b).abs() <= SAME * size)
+        };
         match lines.iter().position(same) {
             Some(known) => lines[known].label = format!("{}, {name}", lines[known].label),
             None if lines.len() < LINES_MAXIMUM => lines.push(Line { label: name, values }),
@@ -132,9 +146,10 @@ fn draw_panel(
             let (dash, gap) = ([80, 30, 160][(index - 1) % 3], 40 + 20 * index as u32);
             chart.draw_series(DashedLineSeries::new(points, dash, gap, style))
         };
-        drawn.map_err(|e| e.to_string())?.label(&line.label).legend(move |(x, y)| {
-            PathElement::new(vec![(x, y), (x + 20 * unit as i32, y)], style)
-        });
+        drawn
+            .map_err(|e| e.to_string())?
+            .label(&line.label)
+            .legend(move |(x, y)| PathElement::new(vec![(x, y), (x + 20 * unit as i32, y)], style));
     }
     chart
         .configure_series_labels()
@@ -151,7 +166,10 @@ fn draw_panel(
 /// Limits of a panel: its lines with a little air; currents with zero.
 fn limits(panel: &Panel<'_>) -> (f64, f64) {
     let values = || panel.lines.iter().flat_map(|line| line.values.iter().copied());
-    let (mut low, mut high) = (values().fold(f64::INFINITY, f64::min), values().fold(f64::NEG_INFINITY, f64::max));
+    let (mut low, mut high) = (
+        values().fold(f64::INFINITY, f64::min),
+        values().fold(f64::NEG_INFINITY, f64::max),
+    );
     if panel.axis == "I/A" {
         (low, high) = (low.min(0.0), high.max(0.0));
     }

@@ -37,7 +37,9 @@ impl Quantity {
     #[must_use]
     pub fn component(self) -> &'static str {
         match self {
-            Self::DiodeReverseVoltage | Self::DiodeCurrentMean | Self::DiodeCurrentRms | Self::DiodeCurrentSurge => "diode",
+            Self::DiodeReverseVoltage | Self::DiodeCurrentMean | Self::DiodeCurrentRms | Self::DiodeCurrentSurge => {
+                "diode"
+            }
             Self::CapacitorVoltage | Self::CapacitorRippleCurrent => "capacitor",
             Self::TransformerApparentPower => "transformer",
         }
@@ -132,11 +134,21 @@ fn diodes(supply: &Supply, index: usize, at: &str, subjects: &mut Vec<Subject>) 
     let rectifier = &supply.outputs()[index].rectifier;
     let ratings = &rectifier.diode.ratings;
     let figures = |field: &str| -> Vec<String> {
-        (0..rectifier.circuit.diodes()).map(|d| format!("{at}/diodes/{d}/{field}")).collect()
+        (0..rectifier.circuit.diodes())
+            .map(|d| format!("{at}/diodes/{d}/{field}"))
+            .collect()
     };
     let rows = [
-        (Quantity::DiodeReverseVoltage, figures("reverse_voltage_peak"), ratings.reverse_voltage),
-        (Quantity::DiodeCurrentMean, figures("current_mean"), ratings.current_mean),
+        (
+            Quantity::DiodeReverseVoltage,
+            figures("reverse_voltage_peak"),
+            ratings.reverse_voltage,
+        ),
+        (
+            Quantity::DiodeCurrentMean,
+            figures("current_mean"),
+            ratings.current_mean,
+        ),
         (Quantity::DiodeCurrentRms, figures("current_rms"), ratings.current_rms),
         (Quantity::DiodeCurrentSurge, Vec::new(), ratings.current_surge),
     ];
@@ -155,7 +167,12 @@ fn diodes(supply: &Supply, index: usize, at: &str, subjects: &mut Vec<Subject>) 
 fn bank(output: usize, number: usize, component: String, capacitor: &Capacitor, subjects: &mut Vec<Subject>) {
     let at = format!("/outputs/{output}/capacitors/{number}");
     let rows = [
-        (Quantity::CapacitorVoltage, "voltage_peak", 1.0, capacitor.ratings.voltage),
+        (
+            Quantity::CapacitorVoltage,
+            "voltage_peak",
+            1.0,
+            capacitor.ratings.voltage,
+        ),
         (
             Quantity::CapacitorRippleCurrent,
             "ripple_current_rms",

@@ -64,10 +64,7 @@ const TERA: i32 = 12;
 const fn prefixed(text: &'static str, maximum: i32) -> Unit {
     Unit {
         text,
-        scale: Scale {
-            factor: 1,
-            exponent: 0,
-        },
+        scale: Scale { factor: 1, exponent: 0 },
         prefix_maximum: Some(maximum),
     }
 }
@@ -127,15 +124,7 @@ impl Dimension {
             Self::Frequency => const { &[prefixed("Hz", GIGA)] },
             Self::Ratio => const { &[bare("%", 1, -2)] },
             Self::Angle => const { &[bare("deg", 1, 0), bare("\u{b0}", 1, 0)] },
-            Self::Temperature => {
-                const {
-                    &[
-                        bare("degC", 1, 0),
-                        bare("\u{b0}C", 1, 0),
-                        bare("\u{2103}", 1, 0),
-                    ]
-                }
-            }
+            Self::Temperature => const { &[bare("degC", 1, 0), bare("\u{b0}C", 1, 0), bare("\u{2103}", 1, 0)] },
             Self::TemperatureDifference => const { &[bare("K", 1, 0)] },
             Self::Time => const { &[prefixed("s", GIGA), bare("min", 60, 0), bare("h", 3600, 0)] },
             Self::Life => const { &[bare("h", 1, 0)] },

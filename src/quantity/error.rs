@@ -111,9 +111,7 @@ pub enum QuantityError {
         text: String,
     },
     /// Ends that do not enclose the nominal value.
-    #[error(
-        "the nominal value lies outside {text:?}; write ends that enclose it: low <= nominal <= high"
-    )]
+    #[error("the nominal value lies outside {text:?}; write ends that enclose it: low <= nominal <= high")]
     NominalOutside {
         /// The ends as written.
         text: String,

@@ -32,9 +32,7 @@ impl Decimal {
         let (negative, unsigned) = take_sign(text);
         let is_part = |c: char| c.is_ascii_digit() || c == '.';
         let body = unsigned.find(|c| !is_part(c)).unwrap_or(unsigned.len());
-        let (whole, fraction) = unsigned[..body]
-            .split_once('.')
-            .unwrap_or((&unsigned[..body], ""));
+        let (whole, fraction) = unsigned[..body].split_once('.').unwrap_or((&unsigned[..body], ""));
         if whole.is_empty() && fraction.is_empty() {
             return Err(DecimalError::Missing);
         }
@@ -63,12 +61,7 @@ impl Decimal {
             return Ok(0.0);
         }
         let sign = if self.negative { "-" } else { "" };
-        let digits: String = self
-            .digits
-            .iter()
-            .rev()
-            .map(|digit| char::from(b'0' + digit))
-            .collect();
+        let digits: String = self.digits.iter().rev().map(|digit| char::from(b'0' + digit)).collect();
         let value: f64 = format!("{sign}{digits}e{}", self.exponent)
             .parse()
             .map_err(|_| DecimalError::Missing)?;
@@ -179,9 +172,7 @@ fn take_exponent(text: &str, of_zero: bool) -> Result<(i32, &str), DecimalError>
         return Ok((0, text));
     };
     let (negative, digits) = take_sign(after);
-    let length = digits
-        .find(|c: char| !c.is_ascii_digit())
-        .unwrap_or(digits.len());
+    let length = digits.find(|c: char| !c.is_ascii_digit()).unwrap_or(digits.len());
     if length == 0 {
         return Ok((0, text));
     }

@@ -38,12 +38,8 @@ pub fn read_band(text: &str, dimension: Dimension) -> Result<Band, QuantityError
         ends(&nominal, rest, dimension)?
     };
     let disordered = |_| match low > high {
-        true => QuantityError::Inverted {
-            text: shorten(rest),
-        },
-        false => QuantityError::NominalOutside {
-            text: shorten(rest),
-        },
+        true => QuantityError::Inverted { text: shorten(rest) },
+        false => QuantityError::NominalOutside { text: shorten(rest) },
     };
     Band::new(low, value, high).map_err(disordered)
 }
@@ -67,10 +63,7 @@ fn begin(text: &str, dimension: Dimension) -> Result<(Decimal, &str), QuantityEr
         return Err(QuantityError::TooLong { dimension });
     }
     if let Some(character) = text.chars().find(|&c| !is_known(c)) {
-        return Err(QuantityError::Character {
-            character,
-            dimension,
-        });
+        return Err(QuantityError::Character { character, dimension });
     }
     let text = text.trim_matches(is_space);
     if text.is_empty() {
@@ -98,29 +91,21 @@ fn take_quantity(text: &str, dimension: Dimension) -> Result<(Decimal, &str), Qu
         return Ok(read);
     }
     let (number, word, rest) = take_number_and_word(text, dimension)?;
-    let scale = dimension
-        .scale_of(word)
-        .ok_or_else(|| unit_error(word, dimension))?;
+    let scale = dimension.scale_of(word).ok_or_else(|| unit_error(word, dimension))?;
     let exact = number.scaled(scale.factor, scale.exponent);
     rounded(&exact, text)?;
     Ok((exact, rest))
 }
 
 /// Takes a number and the word behind it, which is never empty.
-fn take_number_and_word(
-    text: &str,
-    dimension: Dimension,
-) -> Result<(Decimal, &str, &str), QuantityError> {
-    let (number, rest) =
-        Decimal::take(text).map_err(|error| number_error(text, dimension, error))?;
+fn take_number_and_word(text: &str, dimension: Dimension) -> Result<(Decimal, &str, &str), QuantityError> {
+    let (number, rest) = Decimal::take(text).map_err(|error| number_error(text, dimension, error))?;
     let after = rest.trim_start_matches(is_space);
     if let Some(tail) = rest.strip_prefix(',') {
         return Err(comma_error(text, tail));
     }
     if rest.starts_with(['\'', '_']) || after.starts_with(|c: char| c.is_ascii_digit()) {
-        return Err(QuantityError::Separators {
-            text: shorten(text),
-        });
+        return Err(QuantityError::Separators { text: shorten(text) });
     }
     let (word, rest) = after.split_at(after.find(ends_unit).unwrap_or(after.len()));
     if word.is_empty() {
@@ -135,15 +120,7 @@ fn take_number_and_word(
 /// Letter codes of IEC 60062, in which the letter stands for the point: `4k7`, `R047`, `4n7`, `22u`.
 fn letter_code(text: &str, dimension: Dimension) -> Option<(Decimal, &str)> {
     let letters: &[(char, i32)] = match dimension {
-        Dimension::Resistance => &[
-            ('R', 0),
-            ('L', -3),
-            ('K', 3),
-            ('k', 3),
-            ('M', 6),
-            ('G', 9),
-            ('T', 12),
-        ],
+        Dimension::Resistance => &[('R', 0), ('L', -3), ('K', 3), ('k', 3), ('M', 6), ('G', 9), ('T', 12)],
         Dimension::Capacitance => &[
             ('p', -12),
             ('n', -9),
@@ -160,25 +137,15 @@ fn letter_code(text: &str, dimension: Dimension) -> Option<(Decimal, &str)> {
     let letter = word[at..].chars().next()?;
     let &(_, exponent) = letters.iter().find(|(known, _)| *known == letter)?;
     let (whole, fraction) = (&word[..at], &word[at + letter.len_utf8()..]);
-    let is_code =
-        fraction.bytes().all(|b| b.is_ascii_digit()) && !(whole.is_empty() && fraction.is_empty());
+    let is_code = fraction.bytes().all(|b| b.is_ascii_digit()) && !(whole.is_empty() && fraction.is_empty());
     is_code.then(|| (Decimal::around(whole, fraction).scaled(1, exponent), rest))
 }
 
 /// `low to high)` behind the bracket.
-fn range(
-    inner: &str,
-    whole: &str,
-    dimension: Dimension,
-) -> Result<(Decimal, Decimal), QuantityError> {
-    let bad = || QuantityError::Tolerance {
-        text: shorten(whole),
-    };
+fn range(inner: &str, whole: &str, dimension: Dimension) -> Result<(Decimal, Decimal), QuantityError> {
+    let bad = || QuantityError::Tolerance { text: shorten(whole) };
     let (low, rest) = take_quantity(inner.trim_start_matches(is_space), dimension)?;
-    let rest = rest
-        .trim_start_matches(is_space)
-        .strip_prefix("to")
-        .ok_or_else(bad)?;
+    let rest = rest.trim_start_matches(is_space).strip_prefix("to").ok_or_else(bad)?;
     let (high, rest) = take_quantity(rest.trim_start_matches(is_space), dimension)?;
     if rest.trim_matches(is_space) == ")" {
         Ok((low, high))
@@ -188,11 +155,7 @@ fn range(
 }
 
 /// How far a band reaches down and up: `±p %`, `±x unit`, or `-p %/+q %` in either order of the two.
-fn widths(
-    nominal: &Decimal,
-    text: &str,
-    dimension: Dimension,
-) -> Result<(Decimal, Decimal), QuantityError> {
+fn widths(nominal: &Decimal, text: &str, dimension: Dimension) -> Result<(Decimal, Decimal), QuantityError> {
     let width = |part: &str| whole_width(nominal, part, text, dimension);
     for sign in ["\u{b1}", "+/-", "+/\u{2212}", "+-"] {
         if let Some(rest) = text.strip_prefix(sign) {
@@ -200,9 +163,7 @@ fn widths(
             return Ok((both.clone(), both));
         }
     }
-    let bad = || QuantityError::Tolerance {
-        text: shorten(text),
-    };
+    let bad = || QuantityError::Tolerance { text: shorten(text) };
     let (one, other) = text.split_once('/').ok_or_else(bad)?;
     let (one, other) = (one.trim_matches(is_space), other.trim_matches(is_space));
     let (down, up) = match (
@@ -218,15 +179,8 @@ fn widths(
 }
 
 /// One width, a percentage of the nominal value or a quantity of its own, with nothing behind it.
-fn whole_width(
-    nominal: &Decimal,
-    part: &str,
-    text: &str,
-    dimension: Dimension,
-) -> Result<Decimal, QuantityError> {
-    let bad = || QuantityError::Tolerance {
-        text: shorten(text),
-    };
+fn whole_width(nominal: &Decimal, part: &str, text: &str, dimension: Dimension) -> Result<Decimal, QuantityError> {
+    let bad = || QuantityError::Tolerance { text: shorten(text) };
     let part = part.trim_matches(is_space);
     if !part.starts_with(|c: char| c.is_ascii_alphanumeric() || c == '.') {
         return Err(bad());
@@ -253,12 +207,8 @@ fn whole_width(
 
 fn rounded(exact: &Decimal, text: &str) -> Result<f64, QuantityError> {
     exact.value().map_err(|error| match error {
-        DecimalError::TooSmall => QuantityError::Underflow {
-            text: shorten(text),
-        },
-        _ => QuantityError::Overflow {
-            text: shorten(text),
-        },
+        DecimalError::TooSmall => QuantityError::Underflow { text: shorten(text) },
+        _ => QuantityError::Overflow { text: shorten(text) },
     })
 }
 
@@ -266,22 +216,14 @@ fn number_error(text: &str, dimension: Dimension, error: DecimalError) -> Quanti
     let (_, unsigned) = take_sign(text);
     let lower = unsigned.to_ascii_lowercase();
     match error {
-        DecimalError::TooLarge => QuantityError::Overflow {
-            text: shorten(text),
-        },
-        DecimalError::TooSmall => QuantityError::Underflow {
-            text: shorten(text),
-        },
-        DecimalError::Points => QuantityError::Separators {
-            text: shorten(text),
-        },
+        DecimalError::TooLarge => QuantityError::Overflow { text: shorten(text) },
+        DecimalError::TooSmall => QuantityError::Underflow { text: shorten(text) },
+        DecimalError::Points => QuantityError::Separators { text: shorten(text) },
         DecimalError::Missing if unsigned.starts_with(',') => comma_error(text, &unsigned[1..]),
-        DecimalError::Missing if lower.starts_with("inf") || lower.starts_with("nan") => {
-            QuantityError::NotFinite {
-                text: shorten(text),
-                dimension,
-            }
-        }
+        DecimalError::Missing if lower.starts_with("inf") || lower.starts_with("nan") => QuantityError::NotFinite {
+            text: shorten(text),
+            dimension,
+        },
         DecimalError::Missing => QuantityError::NoNumber {
             text: shorten(text),
             dimension,
@@ -291,18 +233,12 @@ fn number_error(text: &str, dimension: Dimension, error: DecimalError) -> Quanti
 
 /// A comma before three digits may be meant to group them; any other is a decimal comma.
 fn comma_error(text: &str, tail: &str) -> QuantityError {
-    let digits = tail
-        .find(|c: char| !c.is_ascii_digit())
-        .unwrap_or(tail.len());
+    let digits = tail.find(|c: char| !c.is_ascii_digit()).unwrap_or(tail.len());
     let (_, unsigned) = take_sign(text);
     let groups = digits == 3 && !unsigned.starts_with(['0', ',']);
     match groups {
-        true => QuantityError::Separators {
-            text: shorten(text),
-        },
-        false => QuantityError::DecimalComma {
-            text: shorten(text),
-        },
+        true => QuantityError::Separators { text: shorten(text) },
+        false => QuantityError::DecimalComma { text: shorten(text) },
     }
 }
 
@@ -314,26 +250,15 @@ fn unit_error(word: &str, dimension: Dimension) -> QuantityError {
     };
     let unit = dimension.units()[0];
     let small = word.strip_prefix('K').map(|rest| format!("k{rest}"));
-    if let Some(kilo) = small
-        .as_deref()
-        .filter(|kilo| dimension.scale_of(kilo).is_some())
-    {
+    if let Some(kilo) = small.as_deref().filter(|kilo| dimension.scale_of(kilo).is_some()) {
         return unknown(format!("kilo is a small k: write \"{kilo}\""));
     }
     let prefix = small.as_deref().unwrap_or(word);
     if unit.prefix_maximum.is_some() && PREFIXES.iter().any(|(text, _)| *text == prefix) {
-        return unknown(format!(
-            "a prefix needs its unit: write \"{prefix}{}\"",
-            unit.text
-        ));
+        return unknown(format!("a prefix needs its unit: write \"{prefix}{}\"", unit.text));
     }
-    let others = Dimension::ALL
-        .into_iter()
-        .filter(|&other| other != dimension);
-    if let Some(found) = others
-        .into_iter()
-        .find(|other| other.scale_of(word).is_some())
-    {
+    let others = Dimension::ALL.into_iter().filter(|&other| other != dimension);
+    if let Some(found) = others.into_iter().find(|other| other.scale_of(word).is_some()) {
         return QuantityError::WrongDimension {
             unit: shorten(word),
             found,
@@ -352,8 +277,7 @@ fn respelt(word: &str, dimension: Dimension) -> Option<String> {
         let at = word.len().checked_sub(unit.text.len())?;
         let (prefix, own) = (word.get(..at)?, word.get(at..)?);
         let meant = format!("{prefix}{}", unit.text);
-        (own.eq_ignore_ascii_case(unit.text) && dimension.scale_of(&meant).is_some())
-            .then_some(meant)
+        (own.eq_ignore_ascii_case(unit.text) && dimension.scale_of(&meant).is_some()).then_some(meant)
     })
 }
 
@@ -386,11 +310,7 @@ fn strip_minus(text: &str) -> Option<&str> {
 
 /// Where a unit ends.
 fn ends_unit(c: char) -> bool {
-    is_space(c)
-        || matches!(
-            c,
-            '(' | ')' | '\u{b1}' | '/' | '+' | '-' | '\u{2212}' | '\u{2013}'
-        )
+    is_space(c) || matches!(c, '(' | ')' | '\u{b1}' | '/' | '+' | '-' | '\u{2212}' | '\u{2013}')
 }
 
 /// The beginning of a text, for an error message.

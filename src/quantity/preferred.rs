@@ -21,8 +21,8 @@ pub enum Series {
 
 /// IEC 60063, E24 (from memory; eight of its values differ from the rounded powers of the 24th root of ten).
 const E24: [f64; 24] = [
-    1.0, 1.1, 1.2, 1.3, 1.5, 1.6, 1.8, 2.0, 2.2, 2.4, 2.7, 3.0, 3.3, 3.6, 3.9, 4.3, 4.7, 5.1, 5.6,
-    6.2, 6.8, 7.5, 8.2, 9.1,
+    1.0, 1.1, 1.2, 1.3, 1.5, 1.6, 1.8, 2.0, 2.2, 2.4, 2.7, 3.0, 3.3, 3.6, 3.9, 4.3, 4.7, 5.1, 5.6, 6.2, 6.8, 7.5, 8.2,
+    9.1,
 ];
 const E12: [f64; 12] = every(2);
 const E6: [f64; 6] = every(4);
@@ -43,9 +43,7 @@ const fn every<const COUNT: usize>(step: usize) -> [f64; COUNT] {
 
 /// IEC 60063, E48 and E96: 10^(i/n) to three figures, without exception in these two series.
 fn three_figures<const COUNT: usize>() -> [f64; COUNT] {
-    std::array::from_fn(|index| {
-        (100.0 * 10.0_f64.powf(index as f64 / COUNT as f64)).round() / 100.0
-    })
+    std::array::from_fn(|index| (100.0 * 10.0_f64.powf(index as f64 / COUNT as f64)).round() / 100.0)
 }
 
 /// How much of itself a number may lie beyond a preferred value and still count as it: what a few roundings come to.
@@ -89,18 +87,14 @@ impl Series {
         // Where the value is preferred itself, both places are its own, and it counts on neither side.
         let own = i64::from(down == up);
         let (first, last) = (down + 1 - own - reach(below), up - 1 + own + reach(above));
-        (first..=last)
-            .filter_map(|place| self.value_at(place))
-            .collect()
+        (first..=last).filter_map(|place| self.value_at(place)).collect()
     }
 
     /// The preferred values from `low` to `high`, both included where they are preferred themselves.
     #[must_use]
     pub fn between(self, low: f64, high: f64) -> Vec<f64> {
         match (self.place_up(low), self.place_down(high)) {
-            (Some(first), Some(last)) => (first..=last)
-                .filter_map(|place| self.value_at(place))
-                .collect(),
+            (Some(first), Some(last)) => (first..=last).filter_map(|place| self.value_at(place)).collect(),
             _ => Vec::new(),
         }
     }
@@ -119,9 +113,7 @@ impl Series {
         let index = usize::try_from(place.rem_euclid(self.count())).ok()?;
         let mantissa = self.values().get(index)?;
         // By way of the decimal, so that 4.7 in the decade of milli is the very double that "4.7 mF" reads to.
-        let value: f64 = format!("{mantissa}e{}", place.div_euclid(self.count()))
-            .parse()
-            .ok()?;
+        let value: f64 = format!("{mantissa}e{}", place.div_euclid(self.count())).parse().ok()?;
         value.is_normal().then_some(value)
     }
 
@@ -129,16 +121,14 @@ impl Series {
     fn place_down(self, value: f64) -> Option<i64> {
         let bound = value * (1.0 + SLACK);
         let start = self.start(value)?;
-        (start..start + 3 * self.count())
-            .rfind(|&place| self.value_at(place).is_some_and(|v| v <= bound))
+        (start..start + 3 * self.count()).rfind(|&place| self.value_at(place).is_some_and(|v| v <= bound))
     }
 
     /// The place of the lowest value that is not below a number.
     fn place_up(self, value: f64) -> Option<i64> {
         let bound = value * (1.0 - SLACK);
         let start = self.start(value)?;
-        (start..start + 3 * self.count())
-            .find(|&place| self.value_at(place).is_some_and(|v| v >= bound))
+        (start..start + 3 * self.count()).find(|&place| self.value_at(place).is_some_and(|v| v >= bound))
     }
 
     /// A place less than two decades below a number, and not above it.
@@ -152,7 +142,5 @@ impl Series {
 /// operations; nothing where the list ends below it.
 #[must_use]
 pub fn next_up(list: &[f64], value: f64) -> Option<f64> {
-    list.iter()
-        .copied()
-        .find(|item| *item >= value - SLACK * value.abs())
+    list.iter().copied().find(|item| *item >= value - SLACK * value.abs())
 }

@@ -48,11 +48,7 @@ pub fn write_quantity(value: f64, dimension: Dimension) -> String {
             fitting.unwrap_or(WRITTEN[0])
         }
     };
-    format!(
-        "{} {prefix}{}",
-        shifted(mantissa, exponent - shift),
-        unit.text
-    )
+    format!("{} {prefix}{}", shifted(mantissa, exponent - shift), unit.text)
 }
 
 /// `d.ddd` times ten to the `places`, plainly where that is short.
@@ -60,9 +56,7 @@ fn shifted(mantissa: &str, places: i32) -> String {
     if !PLAIN.contains(&places) {
         return format!("{mantissa}e{places}");
     }
-    let (sign, unsigned) = mantissa
-        .strip_prefix('-')
-        .map_or(("", mantissa), |rest| ("-", rest));
+    let (sign, unsigned) = mantissa.strip_prefix('-').map_or(("", mantissa), |rest| ("-", rest));
     let digits: String = unsigned.chars().filter(char::is_ascii_digit).collect();
     let zeros = |count: usize| "0".repeat(count);
     let text = match usize::try_from(1 + places) {
@@ -87,9 +81,7 @@ pub fn write_band(band: &Band, dimension: Dimension) -> String {
     );
     let mut best = format!("{nominal} ({low} to {high})");
     for candidate in candidates(band, dimension, &nominal) {
-        if candidate.chars().count() < best.chars().count()
-            && read_band(&candidate, dimension).as_ref() == Ok(band)
-        {
+        if candidate.chars().count() < best.chars().count() && read_band(&candidate, dimension).as_ref() == Ok(band) {
             best = candidate;
         }
     }
@@ -104,8 +96,7 @@ fn candidates(band: &Band, dimension: Dimension, nominal: &str) -> Vec<String> {
     let no_percentage = matches!(dimension, Dimension::Ratio | Dimension::Temperature);
     let sensible = |width: f64| width == 0.0 || SENSIBLE.contains(&(width / magnitude));
     if !no_percentage && magnitude > 0.0 && sensible(down) && sensible(up) {
-        let percent =
-            |width: f64| write_quantity(without_noise(width / magnitude), Dimension::Ratio);
+        let percent = |width: f64| write_quantity(without_noise(width / magnitude), Dimension::Ratio);
         let (below, above) = (percent(down), percent(up));
         out.push(format!("{nominal} \u{b1}{below}"));
         out.push(format!("{nominal} -{below}/+{above}"));
@@ -114,10 +105,7 @@ fn candidates(band: &Band, dimension: Dimension, nominal: &str) -> Vec<String> {
         Dimension::Temperature => Dimension::TemperatureDifference,
         other => other,
     };
-    out.push(format!(
-        "{nominal} \u{b1}{}",
-        write_quantity(without_noise(down), own)
-    ));
+    out.push(format!("{nominal} \u{b1}{}", write_quantity(without_noise(down), own)));
     out
 }
 

@@ -147,7 +147,11 @@ impl Basis {
             .enumerate()
             .map(|(index, (a, b))| {
                 let value = b.abs();
-                let floor = if sinusoids.contains(&index) { SINUSOID_FLOOR } else { 0.0 };
+                let floor = if sinusoids.contains(&index) {
+                    SINUSOID_FLOOR
+                } else {
+                    0.0
+                };
                 a.abs() * value.max(floor)
             })
             .sum()

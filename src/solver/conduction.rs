@@ -215,7 +215,11 @@ impl<'a> Regimes<'a> {
         let expanded = multiply(&regime.pattern.expand, &extended);
         let capacitors = self.network.capacitors.len();
         let jumps = expanded.iter().zip(instant.full).enumerate().any(|(i, (new, old))| {
-            let scale = if i < capacitors { self.network.voltage_scale } else { self.network.current_scale };
+            let scale = if i < capacitors {
+                self.network.voltage_scale
+            } else {
+                self.network.current_scale
+            };
             (new - old).abs() > JUMP * scale.max(old.abs())
         });
         let derivatives = derivatives(self.network, regime, extended);
@@ -291,7 +295,11 @@ fn rounding_sizes(network: &Network, regime: &Regime, extended: &[f64]) -> Vec<f
         _ if index < n => STATE_FLOOR * network.current_scale,
         _ => SINUSOID_FLOOR,
     };
-    extended.iter().enumerate().map(|(index, v)| v.abs().max(floor(index))).collect()
+    extended
+        .iter()
+        .enumerate()
+        .map(|(index, v)| v.abs().max(floor(index)))
+        .collect()
 }
 
 /// The extended state and its time derivatives.
@@ -322,15 +330,17 @@ fn derivatives(network: &Network, regime: &Regime, extended: Vec<f64>) -> Vec<De
 /// All choices of `count` of the lowest `of` bits.
 fn combinations(of: u32, count: u32) -> impl Iterator<Item = u64> {
     let last: u64 = if of >= 64 { u64::MAX } else { (1 << of) - 1 };
-    let mut next = if count == 0 || count > of { None } else { Some((1_u64 << count) - 1) };
+    let mut next = if count == 0 || count > of {
+        None
+    } else {
+        Some((1_u64 << count) - 1)
+    };
     std::iter::from_fn(move || {
         let now = next?;
         // The next larger number with as many bits (Gosper).
         let low = now & now.wrapping_neg();
         let ripple = now.checked_add(low);
-        next = ripple
-            .map(|r| r | (((now ^ r) >> 2) / low))
-            .filter(|&n| n <= last);
+        next = ripple.map(|r| r | (((now ^ r) >> 2) / low)).filter(|&n| n <= last);
         Some(now)
     })
 }

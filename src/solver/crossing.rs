@@ -164,7 +164,11 @@ impl<'a> Search<'a> {
             let signal = &self.derivatives[index][order];
             *value = self.smooth_dot(signal, values, h);
         }
-        let noise = if at_start { self.noise(index, values) } else { [0.0; TERMS] };
+        let noise = if at_start {
+            self.noise(index, values)
+        } else {
+            [0.0; TERMS]
+        };
         if at_start && !envelope.any {
             // What rounding left of a derivative that is zero must not be taken for its sign.
             for (value, noise) in c.iter_mut().zip(noise) {
@@ -182,7 +186,9 @@ impl<'a> Search<'a> {
             c[0] + 0.75 * c[1] * h + 0.25 * c[2] * h * h + c[3] * h.powi(3) / 24.0,
             c[0] + c[1] * h + 0.5 * c[2] * h * h + c[3] * h.powi(3) / 6.0 - r * h.powi(4) / 24.0,
         ];
-        if bernstein.iter().all(|b| b + envelope.lowest >= -noise[0]) && (at_start || bernstein[4] + envelope.lowest > 0.0) {
+        if bernstein.iter().all(|b| b + envelope.lowest >= -noise[0])
+            && (at_start || bernstein[4] + envelope.lowest > 0.0)
+        {
             return Verdict::Positive;
         }
         let slope = [
@@ -244,7 +250,11 @@ impl<'a> Search<'a> {
             envelope.fourth += signal[1 + 2 * k].hypot(signal[2 + 2 * k]) * angular.powi(4);
         }
         for mode in &self.basis.modes {
-            let size = if mode.pair { signal[mode.at].hypot(signal[mode.at + 1]) } else { signal[mode.at].abs() };
+            let size = if mode.pair {
+                signal[mode.at].hypot(signal[mode.at + 1])
+            } else {
+                signal[mode.at].abs()
+            };
             let rate = mode.rate.norm();
             let growth = |since: f64| (mode.rate.re * since).exp();
             let largest = size * growth(here).max(growth(here + h));
@@ -289,7 +299,11 @@ impl<'a> Search<'a> {
             if (newton - at).abs() <= close || high - low <= close {
                 break;
             }
-            at = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
+            at = if newton > low && newton < high {
+                newton
+            } else {
+                0.5 * (low + high)
+            };
         }
         self.scratch = scratch;
         at

@@ -50,7 +50,9 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
         time: task.start,
         full: task.full.to_vec(),
         sources: Vec::new(),
-        derivative: task.derivative.then(|| DMatrix::identity(task.full.len(), task.full.len())),
+        derivative: task
+            .derivative
+            .then(|| DMatrix::identity(task.full.len(), task.full.len())),
         rate_before: None,
     };
     let mut flows = Vec::new();
@@ -107,12 +109,7 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
 const ALIKE: f64 = 1e-9;
 
 /// The slacks worth watching: those that are not zero throughout, each once with all switches that share it.
-fn watch(
-    network: &Network,
-    regime: &super::regime::Regime,
-    flow: &Flow,
-    scratch: &mut Vec<f64>,
-) -> Vec<Watched> {
+fn watch(network: &Network, regime: &super::regime::Regime, flow: &Flow, scratch: &mut Vec<f64>) -> Vec<Watched> {
     let mut watched: Vec<Watched> = Vec::with_capacity(regime.slack.len());
     for (tag, row) in regime.slack_modal.iter().enumerate() {
         flow.signal(regime, row, scratch);
@@ -124,7 +121,12 @@ fn watch(
         if size <= 1e-13 * scale {
             continue;
         }
-        let alike = |w: &&mut Watched| w.signal.iter().zip(scratch.iter()).all(|(a, b)| (a - b).abs() <= ALIKE * size);
+        let alike = |w: &&mut Watched| {
+            w.signal
+                .iter()
+                .zip(scratch.iter())
+                .all(|(a, b)| (a - b).abs() <= ALIKE * size)
+        };
         if let Some(known) = watched.iter_mut().find(alike) {
             known.switches |= 1 << tag;
             continue;

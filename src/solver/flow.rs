@@ -37,9 +37,7 @@ impl Flow {
         let first = regime.basis.width - n;
         for mode in &regime.basis.modes {
             let at = mode.at - first;
-            let take = |from: &[f64]| {
-                Complex::new(from[at], if mode.pair { from[at + 1] } else { 0.0 })
-            };
+            let take = |from: &[f64]| Complex::new(from[at], if mode.pair { from[at + 1] } else { 0.0 });
             let (q, b) = (take(&rest), take(&regime.drive));
             let (fixed, moving) = if mode.slow {
                 (q, mode.rate * q + b)

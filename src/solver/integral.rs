@@ -77,7 +77,11 @@ impl Integrals {
         let mut sum = 0.0;
         for (i, a) in one.iter().enumerate() {
             if *a != 0.0 {
-                sum += a * other.iter().enumerate().map(|(j, b)| b * self.gram[(i, j)]).sum::<f64>();
+                sum += a * other
+                    .iter()
+                    .enumerate()
+                    .map(|(j, b)| b * self.gram[(i, j)])
+                    .sum::<f64>();
             }
         }
         sum
@@ -268,7 +272,11 @@ fn slope_sign(basis: &Basis, flow: &Flow, slope: &[f64], from: f64, quiet: f64, 
     for order in 0..3 {
         basis.values(flow.start + from, from, scratch);
         let value = Basis::dot(&derivative, scratch);
-        let floor = if order == 0 { quiet } else { 1e-12 * basis.magnitude(&derivative, scratch) };
+        let floor = if order == 0 {
+            quiet
+        } else {
+            1e-12 * basis.magnitude(&derivative, scratch)
+        };
         if value.abs() > floor {
             return value.signum();
         }

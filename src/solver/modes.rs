@@ -12,6 +12,9 @@ const NEIGHBOUR: f64 = 4e-11;
 /// A basis worse than this is taken for defective.
 const CONDITION_MAXIMUM: f64 = 1e6;
 
+/// Eigenvalues and their eigenvectors.
+type Eigen = (Vec<Complex<f64>>, Vec<Vec<Complex<f64>>>);
+
 /// One natural mode: a real one, or a complex pair counted once.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Mode {
@@ -84,7 +87,11 @@ fn neighbour(matrix: &DMatrix<f64>) -> DMatrix<f64> {
 }
 
 fn decompose(matrix: &DMatrix<f64>) -> Option<Modes> {
-    let (rates, vectors) = if matrix.nrows() == 2 { two(matrix) } else { several(matrix)? };
+    let (rates, vectors) = if matrix.nrows() == 2 {
+        two(matrix)
+    } else {
+        several(matrix)?
+    };
     let n = matrix.nrows();
     let mut modes = Vec::with_capacity(n);
     let mut right = DMatrix::zeros(n, n);
@@ -116,7 +123,7 @@ fn decompose(matrix: &DMatrix<f64>) -> Option<Modes> {
 }
 
 /// Eigenvalues and eigenvectors of a two by two matrix.
-fn two(m: &DMatrix<f64>) -> (Vec<Complex<f64>>, Vec<Vec<Complex<f64>>>) {
+fn two(m: &DMatrix<f64>) -> Eigen {
     let (a, b, c, d) = (m[(0, 0)], m[(0, 1)], m[(1, 0)], m[(1, 1)]);
     let half = 0.5 * (a - d);
     let discriminant = half * half + b * c;
@@ -135,10 +142,7 @@ fn two(m: &DMatrix<f64>) -> (Vec<Complex<f64>>, Vec<Vec<Complex<f64>>>) {
     let vectors = rates
         .iter()
         .map(|rate| {
-            let (one, other) = (
-                vec![Complex::from(b), rate - a],
-                vec![rate - d, Complex::from(c)],
-            );
+            let (one, other) = (vec![Complex::from(b), rate - a], vec![rate - d, Complex::from(c)]);
             let size = |v: &[Complex<f64>]| v.iter().map(Complex::norm_sqr).sum::<f64>();
             let (mut best, norm) = if size(&one) >= size(&other) {
                 let norm = size(&one);
@@ -162,7 +166,7 @@ fn two(m: &DMatrix<f64>) -> (Vec<Complex<f64>>, Vec<Vec<Complex<f64>>>) {
 }
 
 /// Eigenvalues and eigenvectors by the complex Schur form.
-fn several(matrix: &DMatrix<f64>) -> Option<(Vec<Complex<f64>>, Vec<Vec<Complex<f64>>>)> {
+fn several(matrix: &DMatrix<f64>) -> Option<Eigen> {
     let n = matrix.nrows();
     let complex = matrix.map(Complex::from);
     let (q, t) = Schur::try_new(complex, f64::EPSILON, 100 * n)?.unpack();
@@ -184,9 +188,7 @@ fn several(matrix: &DMatrix<f64>) -> Option<(Vec<Complex<f64>>, Vec<Vec<Complex<
             }
             inner[row] = sum / gap;
         }
-        let mut vector: Vec<Complex<f64>> = (0..n)
-            .map(|row| (0..n).map(|c| q[(row, c)] * inner[c]).sum())
-            .collect();
+        let mut vector: Vec<Complex<f64>> = (0..n).map(|row| (0..n).map(|c| q[(row, c)] * inner[c]).sum()).collect();
         if rate.im.abs() <= 64.0 * f64::EPSILON * size {
             rate.im = 0.0;
         }
@@ -200,10 +202,10 @@ fn several(matrix: &DMatrix<f64>) -> Option<(Vec<Complex<f64>>, Vec<Vec<Complex<
 /// Unit length, the largest component real.
 fn normalise(vector: &mut [Complex<f64>]) {
     let norm = vector.iter().map(Complex::norm_sqr).sum::<f64>().sqrt();
-    let largest = vector
-        .iter()
-        .copied()
-        .fold(Complex::from(0.0), |m: Complex<f64>, v| if v.norm() > m.norm() { v } else { m });
+    let largest = vector.iter().copied().fold(
+        Complex::from(0.0),
+        |m: Complex<f64>, v| if v.norm() > m.norm() { v } else { m },
+    );
     if norm > 0.0 && largest.norm() > 0.0 {
         let turn = largest.conj() / (largest.norm() * norm);
         vector.iter_mut().for_each(|v| *v *= turn);

@@ -211,7 +211,11 @@ impl<'a> Shooting<'a> {
         let network = self.regimes.network;
         let length = self.size(step, full);
         let charge = step.rows(0, network.capacitors.len()).amax() / network.voltage_scale;
-        let mut factor = if charge > CHARGE_STEP { CHARGE_STEP / charge } else { 1.0 };
+        let mut factor = if charge > CHARGE_STEP {
+            CHARGE_STEP / charge
+        } else {
+            1.0
+        };
         for _ in 0..HALVINGS {
             let next = full + step * factor;
             if let Ok(taken) = self.shoot(&next, true) {
@@ -249,7 +253,11 @@ impl<'a> Shooting<'a> {
         };
         let run = run(&mut self.regimes, task, &mut self.work)?;
         let change = DVector::from_column_slice(&run.end) - &full;
-        let residual = if full.is_empty() { 0.0 } else { self.size(&change, &full) };
+        let residual = if full.is_empty() {
+            0.0
+        } else {
+            self.size(&change, &full)
+        };
         Ok(Periodic {
             regimes: self.regimes,
             run,

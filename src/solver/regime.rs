@@ -97,7 +97,10 @@ impl Regime {
     #[must_use]
     pub fn signal(&self, signal: &Signal) -> Vec<f64> {
         let mut row = vec![0.0; self.pattern.width];
-        let sums = [(&signal.voltages, &self.pattern.voltage), (&signal.currents, &self.pattern.current)];
+        let sums = [
+            (&signal.voltages, &self.pattern.voltage),
+            (&signal.currents, &self.pattern.current),
+        ];
         for (terms, rows) in sums {
             for &(branch, weight) in terms {
                 for (c, value) in row.iter_mut().enumerate() {

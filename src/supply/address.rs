@@ -3,10 +3,7 @@
 //! One walk visits them all, in the order of a description; reading, replacing and checking quantities are built on it,
 //! so that no quantity can be forgotten by one of them.
 
-use super::{
-    Capacitor, Load, Parts, Rail, Rectifier, Supply, Transformer, Winding, WindingValues,
-    fault::Fault,
-};
+use super::{Capacitor, Load, Parts, Rail, Rectifier, Supply, Transformer, Winding, WindingValues, fault::Fault};
 use crate::bounds::{self, Range};
 use crate::quantity::{Band, Dimension, End};
 
@@ -98,8 +95,18 @@ pub(super) fn walk(parts: &mut Parts, visit: &mut dyn FnMut(Visit<'_>, &mut Band
     walker.at("line", |w| {
         w.quantity("voltage", D::Voltage, bounds::VOLTAGE, &mut line.voltage);
         w.quantity("frequency", D::Frequency, bounds::FREQUENCY, &mut line.frequency);
-        w.quantity("resistance", D::Resistance, bounds::RESISTANCE_OR_ZERO, &mut line.resistance);
-        w.quantity("inductance", D::Inductance, bounds::INDUCTANCE_OR_ZERO, &mut line.inductance);
+        w.quantity(
+            "resistance",
+            D::Resistance,
+            bounds::RESISTANCE_OR_ZERO,
+            &mut line.resistance,
+        );
+        w.quantity(
+            "inductance",
+            D::Inductance,
+            bounds::INDUCTANCE_OR_ZERO,
+            &mut line.inductance,
+        );
         w.each("harmonics", &mut line.harmonics, |w, harmonic| {
             w.quantity("fraction", D::Ratio, bounds::HARMONIC_FRACTION, &mut harmonic.fraction);
             w.quantity("phase", D::Angle, None, &mut harmonic.phase);
@@ -119,8 +126,18 @@ pub(super) fn walk(parts: &mut Parts, visit: &mut dyn FnMut(Visit<'_>, &mut Band
 
 fn walk_transformer(w: &mut Walker<'_>, transformer: &mut Transformer) {
     use Dimension as D;
-    w.quantity("primary_voltage", D::Voltage, bounds::VOLTAGE, &mut transformer.primary_voltage);
-    w.optional("primary_resistance", D::Resistance, bounds::RESISTANCE_OR_ZERO, &mut transformer.primary_resistance);
+    w.quantity(
+        "primary_voltage",
+        D::Voltage,
+        bounds::VOLTAGE,
+        &mut transformer.primary_voltage,
+    );
+    w.optional(
+        "primary_resistance",
+        D::Resistance,
+        bounds::RESISTANCE_OR_ZERO,
+        &mut transformer.primary_resistance,
+    );
     w.quantity(
         "primary_leakage_inductance",
         D::Inductance,
@@ -129,7 +146,12 @@ fn walk_transformer(w: &mut Walker<'_>, transformer: &mut Transformer) {
     );
     w.optional("regulation", D::Ratio, bounds::REGULATION, &mut transformer.regulation);
     w.each("windings", &mut transformer.windings, walk_winding);
-    w.optional("rating", D::ApparentPower, bounds::APPARENT_POWER, &mut transformer.rating);
+    w.optional(
+        "rating",
+        D::ApparentPower,
+        bounds::APPARENT_POWER,
+        &mut transformer.rating,
+    );
     w.optional("core_loss", D::Power, bounds::POWER_OR_ZERO, &mut transformer.core_loss);
 }
 
@@ -140,7 +162,12 @@ fn walk_winding(w: &mut Walker<'_>, winding: &mut Winding) {
             open_circuit_voltage,
             resistance,
         } => {
-            w.quantity("open_circuit_voltage", D::Voltage, bounds::VOLTAGE, open_circuit_voltage);
+            w.quantity(
+                "open_circuit_voltage",
+                D::Voltage,
+                bounds::VOLTAGE,
+                open_circuit_voltage,
+            );
             w.quantity("resistance", D::Resistance, bounds::RESISTANCE_OR_ZERO, resistance);
         }
         WindingValues::Nameplate {
@@ -163,11 +190,26 @@ fn walk_rectifier(w: &mut Walker<'_>, rectifier: &mut Rectifier) {
     use Dimension as D;
     let diode = &mut rectifier.diode;
     w.at("diode", |w| {
-        w.quantity("threshold_voltage", D::Voltage, bounds::VOLTAGE_OR_ZERO, &mut diode.threshold_voltage);
-        w.quantity("slope_resistance", D::Resistance, bounds::RESISTANCE_OR_ZERO, &mut diode.slope_resistance);
+        w.quantity(
+            "threshold_voltage",
+            D::Voltage,
+            bounds::VOLTAGE_OR_ZERO,
+            &mut diode.threshold_voltage,
+        );
+        w.quantity(
+            "slope_resistance",
+            D::Resistance,
+            bounds::RESISTANCE_OR_ZERO,
+            &mut diode.slope_resistance,
+        );
         let ratings = &mut diode.ratings;
         w.at("ratings", |w| {
-            w.optional("reverse_voltage", D::Voltage, bounds::VOLTAGE, &mut ratings.reverse_voltage);
+            w.optional(
+                "reverse_voltage",
+                D::Voltage,
+                bounds::VOLTAGE,
+                &mut ratings.reverse_voltage,
+            );
             w.optional("current_mean", D::Current, bounds::CURRENT, &mut ratings.current_mean);
             w.optional("current_rms", D::Current, bounds::CURRENT, &mut ratings.current_rms);
             w.optional("current_surge", D::Current, bounds::CURRENT, &mut ratings.current_surge);
@@ -183,12 +225,22 @@ fn walk_rectifier(w: &mut Walker<'_>, rectifier: &mut Rectifier) {
 
 fn walk_capacitor(w: &mut Walker<'_>, capacitor: &mut Capacitor) {
     use Dimension as D;
-    w.quantity("capacitance", D::Capacitance, bounds::CAPACITANCE, &mut capacitor.capacitance);
+    w.quantity(
+        "capacitance",
+        D::Capacitance,
+        bounds::CAPACITANCE,
+        &mut capacitor.capacitance,
+    );
     w.quantity("esr", D::Resistance, bounds::RESISTANCE_OR_ZERO, &mut capacitor.esr);
     let ratings = &mut capacitor.ratings;
     w.at("ratings", |w| {
         w.optional("voltage", D::Voltage, bounds::VOLTAGE, &mut ratings.voltage);
-        w.optional("ripple_current", D::Current, bounds::CURRENT, &mut ratings.ripple_current);
+        w.optional(
+            "ripple_current",
+            D::Current,
+            bounds::CURRENT,
+            &mut ratings.ripple_current,
+        );
         w.optional("endurance", D::Life, bounds::LIFE, &mut ratings.endurance);
         if let Some(temperature) = &mut ratings.temperature {
             w.quantity("temperature", D::Temperature, None, temperature);
@@ -201,8 +253,18 @@ fn walk_rail(w: &mut Walker<'_>, rail: &mut Rail) {
     w.each("filter", &mut rail.filter, |w, section| {
         if let Some(series) = &mut section.series {
             w.at("series", |w| {
-                w.quantity("resistance", D::Resistance, bounds::RESISTANCE_OR_ZERO, &mut series.resistance);
-                w.quantity("inductance", D::Inductance, bounds::INDUCTANCE_OR_ZERO, &mut series.inductance);
+                w.quantity(
+                    "resistance",
+                    D::Resistance,
+                    bounds::RESISTANCE_OR_ZERO,
+                    &mut series.resistance,
+                );
+                w.quantity(
+                    "inductance",
+                    D::Inductance,
+                    bounds::INDUCTANCE_OR_ZERO,
+                    &mut series.inductance,
+                );
             });
         }
         if let Some(capacitor) = &mut section.capacitor {
@@ -225,7 +287,12 @@ fn walk_rail(w: &mut Walker<'_>, rail: &mut Rail) {
             w.quantity("output_voltage", D::Voltage, bounds::VOLTAGE, output_voltage);
             w.quantity("output_current", D::Current, bounds::CURRENT_OR_ZERO, output_current);
             w.quantity("dropout", D::Voltage, bounds::VOLTAGE_OR_ZERO, dropout);
-            w.quantity("quiescent_current", D::Current, bounds::CURRENT_OR_ZERO, quiescent_current);
+            w.quantity(
+                "quiescent_current",
+                D::Current,
+                bounds::CURRENT_OR_ZERO,
+                quiescent_current,
+            );
         }
         Load::Open => {}
     });

@@ -13,7 +13,6 @@ mod rectifier;
 mod sound;
 mod transformer;
 
-
 pub use address::{NoSuchQuantity, Slot};
 pub use fault::Fault;
 pub use filter::{Capacitor, CapacitorRatings, Section, Series};
@@ -127,7 +126,9 @@ impl Supply {
     /// Whether a winding is used with a tap.
     #[must_use]
     pub fn is_tapped(&self, winding: usize) -> bool {
-        self.outputs().iter().any(|o| o.winding == winding && o.rectifier.circuit.needs_tap())
+        self.outputs()
+            .iter()
+            .any(|o| o.winding == winding && o.rectifier.circuit.needs_tap())
     }
 
     /// What the circuit needs of the transformer, every band at its nominal value.

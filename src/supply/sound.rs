@@ -18,13 +18,19 @@ pub(super) fn faults(parts: &Parts) -> Vec<Fault> {
     }
     let most = bounds::OUTPUTS_MAXIMUM;
     if parts.outputs.len() > most {
-        faults.push(Fault::new("/outputs", format!("at most {most} outputs are solved together")));
+        faults.push(Fault::new(
+            "/outputs",
+            format!("at most {most} outputs are solved together"),
+        ));
     }
     for (index, output) in parts.outputs.iter().enumerate() {
         output_faults(parts, output, &format!("/outputs/{index}"), &mut faults);
         let tap = output.rectifier.circuit.needs_tap();
         let others = &parts.outputs[..index];
-        if others.iter().any(|o| o.winding == output.winding && o.rectifier.circuit.needs_tap() != tap) {
+        if others
+            .iter()
+            .any(|o| o.winding == output.winding && o.rectifier.circuit.needs_tap() != tap)
+        {
             let detail = "an earlier output uses this winding the other way: a winding either has a tap or has none";
             faults.push(Fault::new(format!("/outputs/{index}/winding"), detail));
         }
@@ -38,9 +44,12 @@ fn ranges(parts: &Parts, faults: &mut Vec<Fault>) {
         let fault = match (visit.range, visit.dimension) {
             (Some(range), dimension) => outside(range, dimension, band),
             (None, Dimension::Angle) => beyond(-bounds::ANGLE_MAXIMUM, bounds::ANGLE_MAXIMUM, Dimension::Angle, band),
-            (None, dimension) => {
-                beyond(bounds::TEMPERATURE_MINIMUM, bounds::TEMPERATURE_MAXIMUM, dimension, band)
-            }
+            (None, dimension) => beyond(
+                bounds::TEMPERATURE_MINIMUM,
+                bounds::TEMPERATURE_MAXIMUM,
+                dimension,
+                band,
+            ),
         };
         if let Some(detail) = fault {
             faults.push(Fault::new(visit.pointer, detail));
@@ -77,7 +86,10 @@ fn line(parts: &Parts, faults: &mut Vec<Fault>) {
     let harmonics = &parts.line.harmonics;
     if harmonics.len() > bounds::HARMONICS_MAXIMUM {
         let most = bounds::HARMONICS_MAXIMUM;
-        faults.push(Fault::new("/line/harmonics", format!("at most {most} harmonics are taken")));
+        faults.push(Fault::new(
+            "/line/harmonics",
+            format!("at most {most} harmonics are taken"),
+        ));
     }
     for (index, harmonic) in harmonics.iter().enumerate() {
         let pointer = format!("/line/harmonics/{index}/order");
@@ -94,7 +106,10 @@ fn windings(transformer: &Transformer, faults: &mut Vec<Fault>) {
     let count = transformer.windings.len();
     if count == 0 || count > bounds::WINDINGS_MAXIMUM {
         let most = bounds::WINDINGS_MAXIMUM;
-        faults.push(Fault::new("/transformer/windings", format!("a transformer has between 1 and {most} windings")));
+        faults.push(Fault::new(
+            "/transformer/windings",
+            format!("a transformer has between 1 and {most} windings"),
+        ));
     }
     let nameplates = transformer
         .windings
@@ -115,7 +130,10 @@ fn windings(transformer: &Transformer, faults: &mut Vec<Fault>) {
     }
     if nameplates == 0 {
         if transformer.primary_resistance.is_none() {
-            faults.push(Fault::new("/transformer/primary_resistance", "is needed, for example \"11 ohm\""));
+            faults.push(Fault::new(
+                "/transformer/primary_resistance",
+                "is needed, for example \"11 ohm\"",
+            ));
         }
         if transformer.regulation.is_some() {
             faults.push(Fault::new(
@@ -144,7 +162,11 @@ fn output_faults(parts: &Parts, output: &Output, at: &str, faults: &mut Vec<Faul
         faults.push(Fault::new(format!("{at}/winding"), detail));
     }
     if circuit.is_three_phase() != (parts.line.phases == Phases::Three) {
-        let phases = if circuit.is_three_phase() { "three phases" } else { "one phase" };
+        let phases = if circuit.is_three_phase() {
+            "three phases"
+        } else {
+            "one phase"
+        };
         faults.push(Fault::new(
             format!("{at}/rectifier/circuit"),
             format!("{name} needs a line of {phases}; set /line/phases"),
@@ -158,14 +180,21 @@ fn output_faults(parts: &Parts, output: &Output, at: &str, faults: &mut Vec<Faul
     }
     columns(output, at, faults);
     if output.rails.len() != circuit.rails() {
-        let wanted = if circuit.rails() == 2 { "two rails, positive first" } else { "one rail" };
+        let wanted = if circuit.rails() == 2 {
+            "two rails, positive first"
+        } else {
+            "one rail"
+        };
         faults.push(Fault::new(format!("{at}/rails"), format!("{name} feeds {wanted}")));
     }
     for (index, rail) in output.rails.iter().enumerate() {
         let at = format!("{at}/rails/{index}");
         if rail.filter.len() > bounds::SECTIONS_MAXIMUM {
             let most = bounds::SECTIONS_MAXIMUM;
-            faults.push(Fault::new(format!("{at}/filter"), format!("at most {most} sections are taken")));
+            faults.push(Fault::new(
+                format!("{at}/filter"),
+                format!("at most {most} sections are taken"),
+            ));
         }
         for (section_index, section) in rail.filter.iter().enumerate() {
             let at = format!("{at}/filter/{section_index}");
@@ -221,6 +250,9 @@ fn columns(output: &Output, at: &str, faults: &mut Vec<Fault>) {
 fn count(count: u32, at: &str, faults: &mut Vec<Fault>) {
     if count == 0 || count > bounds::COUNT_MAXIMUM {
         let most = bounds::COUNT_MAXIMUM;
-        faults.push(Fault::new(format!("{at}/count"), format!("between 1 and {most} capacitors stand in parallel")));
+        faults.push(Fault::new(
+            format!("{at}/count"),
+            format!("between 1 and {most} capacitors stand in parallel"),
+        ));
     }
 }

@@ -143,9 +143,7 @@ impl Transformer {
             .enumerate()
             .map(|(index, (winding, derived))| match &winding.values {
                 WindingValues::Nameplate { rated_current, .. } => {
-                    halves.get(index).copied().unwrap_or(1.0)
-                        * rated_current.nominal()
-                        * derived.open_circuit_voltage
+                    halves.get(index).copied().unwrap_or(1.0) * rated_current.nominal() * derived.open_circuit_voltage
                         / self.primary_voltage.nominal()
                 }
                 WindingValues::Measured { .. } => 0.0,

@@ -110,7 +110,11 @@ fn charged_at_once(regimes: &Regimes<'_>, flow: &crate::solver::flow::Flow) -> b
     let regime = regimes.get(flow.regime);
     network.capacitors.iter().any(|&branch| {
         let mut coefficients = Vec::new();
-        flow.signal(regime, &regime.modal(&regime.signal(&Signal::voltage(branch))), &mut coefficients);
+        flow.signal(
+            regime,
+            &regime.modal(&regime.signal(&Signal::voltage(branch))),
+            &mut coefficients,
+        );
         let volts = flow.value(&regime.basis, &coefficients, 0.0, &mut vec![0.0; regime.basis.width]);
         volts.abs() > IMPULSE * network.voltage_scale
     })

@@ -37,7 +37,10 @@ impl<'a> Corners<'a> {
     /// How many corners there are; `None` where that overflows.
     #[must_use]
     pub fn count(&self) -> Option<usize> {
-        u32::try_from(self.bands.len()).ok().and_then(|n| 1_usize.checked_shl(n)).filter(|_| self.bands.len() < 63)
+        u32::try_from(self.bands.len())
+            .ok()
+            .and_then(|n| 1_usize.checked_shl(n))
+            .filter(|_| self.bands.len() < 63)
     }
 
     /// The supply with every band at a value: `values` one a band.

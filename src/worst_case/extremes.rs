@@ -69,10 +69,13 @@ pub struct Extremes {
     pub all_corners: bool,
 }
 
+/// Values of the bands, and the figures there.
+type Point = (Vec<f64>, Vec<f64>);
+
 /// Points of the bands with their figures.
 #[derive(Debug)]
 pub struct Survey {
-    points: Vec<(Vec<f64>, Vec<f64>)>,
+    points: Vec<Point>,
 }
 
 /// Solves the corners of a supply and finds every figure's extremes. `solve` gives the figures of a supply without bands;
@@ -88,7 +91,7 @@ pub fn survey<E: Send>(
     let corners = Corners::of(supply);
     let count = corners.count().filter(|count| *count <= corners_maximum);
     let solve_all = |points: Vec<Vec<f64>>| -> Result<Survey, E> {
-        let solved: Vec<Result<(Vec<f64>, Vec<f64>), E>> = points
+        let solved: Vec<Result<Point, E>> = points
             .into_par_iter()
             .map(|point| solve(&corners.at(&point)).map(|figures| (point, figures)))
             .collect();
@@ -156,7 +159,10 @@ fn mixed_bands(corners: &Corners<'_>, survey: &Survey, figures: usize) -> Vec<(u
         for band in 0..corners.bands.len() {
             let (mut rises, mut falls) = (false, false);
             for index in (0..survey.points.len()).filter(|index| index >> band & 1 == 0) {
-                let (low, high) = (survey.points[index].1[figure], survey.points[index | 1 << band].1[figure]);
+                let (low, high) = (
+                    survey.points[index].1[figure],
+                    survey.points[index | 1 << band].1[figure],
+                );
                 let flat = FLAT * low.abs().max(high.abs());
                 rises |= high - low > flat;
                 falls |= low - high > flat;

@@ -1,5 +1,14 @@
 //! Laws that every solution obeys, over random supplies: charge, flux, energy, scaling, symmetry. The seed is fixed.
 
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::new_without_default,
+    missing_docs,
+    unreachable_pub,
+    reason = "a test that cannot go on fails; test crates export nothing"
+)]
+
 #[path = "../support/mod.rs"]
 mod support;
 
@@ -45,7 +54,9 @@ impl Plain {
         let (ohm, henry, farad) = (z, z * t, t / z);
         out.hertz /= t;
         out.line = (self.line.0 * ohm, self.line.1 * henry);
-        out.transformer = self.transformer.map(|(v, rp, lp, rs, ls)| (v, rp * ohm, lp * henry, rs * ohm, ls * henry));
+        out.transformer = self
+            .transformer
+            .map(|(v, rp, lp, rs, ls)| (v, rp * ohm, lp * henry, rs * ohm, ls * henry));
         out.diode.1 *= ohm;
         for section in &mut out.sections {
             *section = (section.0 * ohm, section.1 * henry, section.2 * farad, section.3 * ohm);
@@ -147,13 +158,24 @@ fn or_zero(low: f64, high: f64) -> impl Strategy<Value = f64> {
 /// Supplies from a thousandth to ten times what an engineer would call sensible.
 fn plain() -> impl Strategy<Value = Plain> {
     let circuit = prop_oneof![Just(Circuit::HalfWave), Just(Circuit::Bridge), Just(Circuit::CentreTap)];
-    let section = (or_zero(1e-2, 10.0), or_zero(1e-4, 0.3), decades(1e-5, 3e-2), or_zero(1e-3, 0.3));
+    let section = (
+        or_zero(1e-2, 10.0),
+        or_zero(1e-4, 0.3),
+        decades(1e-5, 3e-2),
+        or_zero(1e-3, 0.3),
+    );
     let load = prop_oneof![
         decades(3.0, 3e3).prop_map(PlainLoad::Resistance),
         decades(1e-3, 2.0).prop_map(PlainLoad::Current),
         (5.0..24.0_f64, decades(1e-2, 2.0), 0.2..2.0_f64).prop_map(|(v, i, d)| PlainLoad::Regulator(v, i, d)),
     ];
-    let transformer = (6.0..40.0_f64, decades(1.0, 100.0), or_zero(1e-4, 0.1), decades(0.05, 3.0), or_zero(1e-6, 3e-3));
+    let transformer = (
+        6.0..40.0_f64,
+        decades(1.0, 100.0),
+        or_zero(1e-4, 0.1),
+        decades(0.05, 3.0),
+        or_zero(1e-6, 3e-3),
+    );
     let harmonic = proptest::option::of((2..12_u32, 0.005..0.1_f64, 0.0..360.0_f64));
     (
         circuit,
@@ -165,17 +187,19 @@ fn plain() -> impl Strategy<Value = Plain> {
         load,
         prop_oneof![Just(50.0), Just(60.0), Just(400.0)],
     )
-        .prop_map(|(circuit, line, harmonic, transformer, diode, sections, load, hertz)| Plain {
-            circuit,
-            volts: 230.0,
-            hertz,
-            line,
-            harmonic,
-            transformer: Some(transformer),
-            diode,
-            sections,
-            load,
-        })
+        .prop_map(
+            |(circuit, line, harmonic, transformer, diode, sections, load, hertz)| Plain {
+                circuit,
+                volts: 230.0,
+                hertz,
+                line,
+                harmonic,
+                transformer: Some(transformer),
+                diode,
+                sections,
+                load,
+            },
+        )
 }
 
 fn config(cases: u32) -> Config {
@@ -216,7 +240,10 @@ fn integral(periodic: &Periodic<'_>, signal: &Signal) -> f64 {
 
 fn near(what: &str, a: f64, b: f64, relative: f64, floor: f64) -> Result<(), TestCaseError> {
     let error = (a - b).abs();
-    prop_assert!(error <= relative * a.abs().max(b.abs()) + floor, "{what}: {a:e} and {b:e}");
+    prop_assert!(
+        error <= relative * a.abs().max(b.abs()) + floor,
+        "{what}: {a:e} and {b:e}"
+    );
     Ok(())
 }
 
@@ -315,8 +342,18 @@ fn samples_agree_with_integrals() {
     let figures = figures::compute(&network, &periodic);
     let waves = figures::waveforms(&network, &periodic, 20_001);
     let mean = |values: &[f64]| values[1..].iter().sum::<f64>() / (values.len() - 1) as f64;
-    support::close("rail", mean(&waves.rails[0]), figures.outputs[0].rails[0].voltage.mean, 1e-7);
-    support::close("diode", mean(&waves.diodes[0]), figures.outputs[0].diodes[0].current_mean, 1e-5);
+    support::close(
+        "rail",
+        mean(&waves.rails[0]),
+        figures.outputs[0].rails[0].voltage.mean,
+        1e-7,
+    );
+    support::close(
+        "diode",
+        mean(&waves.diodes[0]),
+        figures.outputs[0].diodes[0].current_mean,
+        1e-5,
+    );
     let highest = waves.rails[0].iter().copied().fold(f64::MIN, f64::max);
     support::close("crest", highest, figures.outputs[0].rails[0].voltage.crest, 1e-6);
     assert_eq!(waves.time.len(), 20_001);

@@ -21,16 +21,27 @@ fn check(case: &str, circuit: Circuit, expected: usize) {
         // The table's lowest voltage is that of a grid of samples: up to 1e-6 of the crest above the true one.
         let sampled = |column: &str, found: f64, slack: f64| {
             let off = (found - row[column].parse::<f64>().unwrap()).abs();
-            assert!(off <= 0.51 * last_digit(&row[column]) + slack, "{name} {column}: found {found}");
+            assert!(
+                off <= 0.51 * last_digit(&row[column]) + slack,
+                "{name} {column}: found {found}"
+            );
         };
-        sampled("ripple_pp_pct_of_Vdc", 100.0 * voltage.ripple_pp / voltage.mean, 1e-4 / voltage.mean);
+        sampled(
+            "ripple_pp_pct_of_Vdc",
+            100.0 * voltage.ripple_pp / voltage.mean,
+            1e-4 / voltage.mean,
+        );
         sampled("vmin_over_Vpk", voltage.valley, 1e-6);
         see("diode_Irms_over_Iavg", diode.current_rms / diode.current_mean);
         see("diode_Ipk_over_Iavg", diode.current_peak / diode.current_mean);
         see("cap_Irms_over_Idc", output.capacitors[0].ripple_current_rms);
         let angle = row["off_deg"].parse::<f64>().unwrap() - row["on_deg"].parse::<f64>().unwrap();
         let difference = (diode.conduction_angle - angle).abs();
-        assert!(difference <= 1.05e-4, "{name} conduction angle {} for {angle}", diode.conduction_angle);
+        assert!(
+            difference <= 1.05e-4,
+            "{name} conduction angle {} for {angle}",
+            diode.conduction_angle
+        );
     }
 }
 

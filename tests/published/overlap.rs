@@ -18,7 +18,12 @@ fn check(circuit: Circuit, henries: f64, cosine: f64, plain_mean: f64, plain_ang
     let name = format!("{circuit:?} L={henries}");
     let mean = figures.outputs[0].rails[0].voltage.mean;
     close(&format!("{name} mean"), mean, plain_mean * 0.5 * (1.0 + cosine), EXACT);
-    close(&format!("{name} overlap"), overlap(&figures, plain_angle), cosine.acos().to_degrees(), EXACT);
+    close(
+        &format!("{name} overlap"),
+        overlap(&figures, plain_angle),
+        cosine.acos().to_degrees(),
+        EXACT,
+    );
 }
 
 #[test]
@@ -39,7 +44,13 @@ fn centre_tap_overlap_matches_closed_form() {
 fn three_phase_half_wave_overlap_matches_closed_form() {
     for henries in [0.01, 0.1, 0.3] {
         let cosine = 1.0 - 2.0 * henries / 3.0_f64.sqrt();
-        check(Circuit::ThreePhaseHalfWave, henries, cosine, 3.0 * 3.0_f64.sqrt() / (2.0 * PI), 120.0);
+        check(
+            Circuit::ThreePhaseHalfWave,
+            henries,
+            cosine,
+            3.0 * 3.0_f64.sqrt() / (2.0 * PI),
+            120.0,
+        );
     }
 }
 
@@ -47,15 +58,28 @@ fn three_phase_half_wave_overlap_matches_closed_form() {
 fn three_phase_bridge_overlap_matches_closed_form() {
     for henries in [0.01, 0.1, 0.3] {
         let cosine = 1.0 - 2.0 * henries / 3.0_f64.sqrt();
-        check(Circuit::ThreePhaseBridge, henries, cosine, 3.0 * 3.0_f64.sqrt() / PI, 120.0);
+        check(
+            Circuit::ThreePhaseBridge,
+            henries,
+            cosine,
+            3.0 * 3.0_f64.sqrt() / PI,
+            120.0,
+        );
     }
 }
 
 #[test]
 fn bridge_cases_in_volts_and_amperes() {
     // 120 V, 60 Hz, 1 mH, 10 A and 230 V, 50 Hz, 1 mH, 10 A: closed forms evaluated.
-    for (rms, hertz, angle, mean) in [(120.0, 60.0, "17.14317", "105.638"), (230.0, 50.0, "11.27996", "205.0728")] {
-        let figures = Simple::new(Circuit::Bridge).mains(rms, hertz).line(0.0, 1e-3).current(10.0).figures();
+    for (rms, hertz, angle, mean) in [
+        (120.0, 60.0, "17.14317", "105.638"),
+        (230.0, 50.0, "11.27996", "205.0728"),
+    ] {
+        let figures = Simple::new(Circuit::Bridge)
+            .mains(rms, hertz)
+            .line(0.0, 1e-3)
+            .current(10.0)
+            .figures();
         printed("overlap", overlap(&figures, 180.0), angle);
         printed("mean", figures.outputs[0].rails[0].voltage.mean, mean);
     }
@@ -65,10 +89,19 @@ fn bridge_cases_in_volts_and_amperes() {
 #[test]
 fn rashid_three_phase_bridge_with_line_inductance() {
     let rms = 208.0 / 3.0_f64.sqrt();
-    let figures = Simple::new(Circuit::ThreePhaseBridge).mains(rms, 60.0).line(0.0, 0.5e-3).current(60.0).figures();
+    let figures = Simple::new(Circuit::ThreePhaseBridge)
+        .mains(rms, 60.0)
+        .line(0.0, 0.5e-3)
+        .current(60.0)
+        .figures();
     printed("overlap", overlap(&figures, 120.0), "22.61584");
     printed("mean", figures.outputs[0].rails[0].voltage.mean, "270.099");
-    close("voltage lost", 280.899 - figures.outputs[0].rails[0].voltage.mean, 10.8, 1e-4);
+    close(
+        "voltage lost",
+        280.899 - figures.outputs[0].rails[0].voltage.mean,
+        10.8,
+        1e-4,
+    );
 }
 
 #[test]
@@ -82,7 +115,11 @@ fn bridge_line_current_with_overlap() {
     ];
     for (angle, displacement, purity, distortion, factor) in rows {
         let henries = 0.5 * (1.0 - angle.to_radians().cos());
-        let line = Simple::new(Circuit::Bridge).line(0.0, henries).current(1.0).figures().line;
+        let line = Simple::new(Circuit::Bridge)
+            .line(0.0, henries)
+            .current(1.0)
+            .figures()
+            .line;
         printed("displacement factor", line.displacement_factor, displacement);
         printed("fundamental over rms", line.harmonics[0] / line.current_rms, purity);
         printed("distortion", 100.0 * line.thd, distortion);

@@ -27,9 +27,18 @@ fn check(case: &str, circuit: Circuit, expected: usize) {
         // The voltage falls on after turn-on until the current has grown to the load's. The table's lowest voltage is that
         // of a grid of samples, between the two.
         let turn_on = turn_on_voltage(&simple.supply());
-        let (lowest, digit) = (row["vmin_over_Vpk"].parse::<f64>().unwrap(), significant(&row["vmin_over_Vpk"]));
-        assert!(lowest <= turn_on + 0.51 * digit && voltage.valley <= lowest + 0.51 * digit, "{name} valley {lowest}");
-        see("cap_Irms_over_Idc", output.capacitors[0].ripple_current_rms / voltage.mean);
+        let (lowest, digit) = (
+            row["vmin_over_Vpk"].parse::<f64>().unwrap(),
+            significant(&row["vmin_over_Vpk"]),
+        );
+        assert!(
+            lowest <= turn_on + 0.51 * digit && voltage.valley <= lowest + 0.51 * digit,
+            "{name} valley {lowest}"
+        );
+        see(
+            "cap_Irms_over_Idc",
+            output.capacitors[0].ripple_current_rms / voltage.mean,
+        );
         see("diode_Irms_over_Iavg", diode.current_rms / diode.current_mean);
         see("diode_Ipk_over_Iavg", diode.current_peak / diode.current_mean);
     }

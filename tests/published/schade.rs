@@ -36,9 +36,18 @@ fn check(row: &Row, circuit: Circuit) {
     // The voltage falls on after turn-on until the current has grown to the load's. The table's lowest voltage is that of a
     // grid of samples, between the two.
     let turn_on = turn_on_voltage(&simple.supply());
-    let (pp, digit) = (number(row, "ripple_pp_pct_of_Vdc"), significant(&row["ripple_pp_pct_of_Vdc"]));
-    let (least, most) = (100.0 * (voltage.crest - turn_on) / mean, 100.0 * voltage.ripple_pp / mean);
-    assert!(least <= pp + 0.51 * digit && pp <= most + 0.51 * digit, "{name} ripple {pp} between {least} and {most}");
+    let (pp, digit) = (
+        number(row, "ripple_pp_pct_of_Vdc"),
+        significant(&row["ripple_pp_pct_of_Vdc"]),
+    );
+    let (least, most) = (
+        100.0 * (voltage.crest - turn_on) / mean,
+        100.0 * voltage.ripple_pp / mean,
+    );
+    assert!(
+        least <= pp + 0.51 * digit && pp <= most + 0.51 * digit,
+        "{name} ripple {pp} between {least} and {most}"
+    );
     see("diode_Irms_over_Iavg", diode.current_rms / diode.current_mean);
     see("diode_Ipk_over_Iavg", diode.current_peak / diode.current_mean);
     see("cap_Irms_over_Idc", output.capacitors[0].ripple_current_rms / mean);
@@ -46,8 +55,16 @@ fn check(row: &Row, circuit: Circuit) {
     see("source_PF", figures.line.power_factor);
     let angle = number(row, "off_deg") - number(row, "on_deg");
     let difference = (diode.conduction_angle - angle).abs();
-    assert!(difference <= 1.05e-4, "{name} conduction angle {} for {angle}", diode.conduction_angle);
-    let reverse = if circuit == Circuit::CentreTap { "centretap_PIV_over_Vpk" } else { "diode_PIV_over_Vpk" };
+    assert!(
+        difference <= 1.05e-4,
+        "{name} conduction angle {} for {angle}",
+        diode.conduction_angle
+    );
+    let reverse = if circuit == Circuit::CentreTap {
+        "centretap_PIV_over_Vpk"
+    } else {
+        "diode_PIV_over_Vpk"
+    };
     see(reverse, diode.reverse_voltage_peak);
 }
 
@@ -75,7 +92,9 @@ fn full_wave_rows_agree_for_the_centre_tap() {
 
 #[test]
 fn full_wave_doubler_rows_agree_to_the_printed_digits() {
-    rows("doubler").iter().for_each(|row| check(row, Circuit::FullWaveDoubler));
+    rows("doubler")
+        .iter()
+        .for_each(|row| check(row, Circuit::FullWaveDoubler));
 }
 
 /// The scaling behind the combined current chart, with `n` = 1, 2, 1/2 for half-wave, full-wave and doubler: rows 2.01.
@@ -85,7 +104,10 @@ fn peak_currents_follow_the_common_scaling() {
         let diode = &figures.outputs[0].diodes[0];
         diode.current_peak / diode.current_mean
     };
-    let half = Simple::new(Circuit::HalfWave).reservoir(200.0).line(0.01, 0.0).figures();
+    let half = Simple::new(Circuit::HalfWave)
+        .reservoir(200.0)
+        .line(0.01, 0.0)
+        .figures();
     let full = Simple::new(Circuit::Bridge).reservoir(100.0).line(0.02, 0.0).figures();
     let mut doubler = Simple::new(Circuit::FullWaveDoubler).line(0.005, 0.0);
     doubler.stack = Some((400.0, 0.0));

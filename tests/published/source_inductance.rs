@@ -7,12 +7,51 @@ use mainstay::supply::Circuit;
 /// Direct voltage over crest; current, line rms, line peak in crest over reactance; start and stop in degrees; fundamental
 /// over rms, displacement factor, power factor, distortion in percent.
 const STIFF: [[&str; 10]; 6] = [
-    ["0.55", "0.321853", "0.380270", "0.583054", "33.367", "210.307", "0.987485", "0.666673", "0.658329", "15.971"],
-    ["0.60", "0.250947", "0.306999", "0.487246", "36.870", "201.879", "0.978070", "0.709153", "0.693602", "21.294"],
-    ["0.70", "0.137667", "0.182787", "0.314727", "44.427", "184.481", "0.944523", "0.789380", "0.745588", "34.774"],
-    ["0.80", "0.0597769", "0.0886366", "0.170398", "53.130", "165.413", "0.882991", "0.864109", "0.763001", "53.159"],
-    ["0.90", "0.0146216", "0.0259996", "0.0599315", "64.158", "142.233", "0.766281", "0.934113", "0.715793", "83.847"],
-    ["0.95", "0.00361748", "0.00767980", "0.0211350", "71.805", "126.577", "0.654073", "0.967538", "0.632841", "115.65"],
+    [
+        "0.55", "0.321853", "0.380270", "0.583054", "33.367", "210.307", "0.987485", "0.666673", "0.658329", "15.971",
+    ],
+    [
+        "0.60", "0.250947", "0.306999", "0.487246", "36.870", "201.879", "0.978070", "0.709153", "0.693602", "21.294",
+    ],
+    [
+        "0.70", "0.137667", "0.182787", "0.314727", "44.427", "184.481", "0.944523", "0.789380", "0.745588", "34.774",
+    ],
+    [
+        "0.80",
+        "0.0597769",
+        "0.0886366",
+        "0.170398",
+        "53.130",
+        "165.413",
+        "0.882991",
+        "0.864109",
+        "0.763001",
+        "53.159",
+    ],
+    [
+        "0.90",
+        "0.0146216",
+        "0.0259996",
+        "0.0599315",
+        "64.158",
+        "142.233",
+        "0.766281",
+        "0.934113",
+        "0.715793",
+        "83.847",
+    ],
+    [
+        "0.95",
+        "0.00361748",
+        "0.00767980",
+        "0.0211350",
+        "71.805",
+        "126.577",
+        "0.654073",
+        "0.967538",
+        "0.632841",
+        "115.65",
+    ],
 ];
 
 #[test]
@@ -21,7 +60,11 @@ fn an_inductance_into_a_stiff_voltage() {
         // The stiff voltage is a reservoir so large that its ripple is below 1e-8; the table's current draws its voltage.
         // All impedances are a million times the table's, all currents a millionth.
         let (ohms, current) = (1e6, row[1].parse::<f64>().unwrap());
-        let figures = Simple::new(Circuit::Bridge).line(0.0, ohms).reservoir(1e8 / ohms).current(current / ohms).figures();
+        let figures = Simple::new(Circuit::Bridge)
+            .line(0.0, ohms)
+            .reservoir(1e8 / ohms)
+            .current(current / ohms)
+            .figures();
         let (line, output) = (&figures.line, &figures.outputs[0]);
         // The printed current is rounded, hence six digits of the voltage and a little less of what hangs on it.
         let near = |what: &str, found: f64, text: &str| {
@@ -33,7 +76,10 @@ fn an_inductance_into_a_stiff_voltage() {
         near("rms", line.current_rms * ohms, row[2]);
         near("peak", line.current_peak * ohms, row[3]);
         let angle = row[5].parse::<f64>().unwrap() - row[4].parse::<f64>().unwrap();
-        assert!((output.diodes[0].conduction_angle - angle).abs() < 2e-3, "{row:?} angle");
+        assert!(
+            (output.diodes[0].conduction_angle - angle).abs() < 2e-3,
+            "{row:?} angle"
+        );
         near("fundamental", line.harmonics[0] / line.current_rms, row[6]);
         near("displacement", line.displacement_factor, row[7]);
         near("power factor", line.power_factor, row[8]);
@@ -137,7 +183,10 @@ fn a_reservoir_behind_resistance_and_inductance() {
         printed("displacement", line.displacement_factor, case.displacement);
         printed("power factor", line.power_factor, case.factor);
         let angle = case.angles.1 - case.angles.0;
-        assert!((output.diodes[0].conduction_angle - angle).abs() < 1.1e-3, "conduction angle");
+        assert!(
+            (output.diodes[0].conduction_angle - angle).abs() < 1.1e-3,
+            "conduction angle"
+        );
         for (index, text) in case.harmonics.iter().enumerate() {
             let found = 100.0 * line.harmonics[2 * index + 2] / line.harmonics[0];
             printed(&format!("order {}", 2 * index + 3), found, text);
@@ -149,7 +198,11 @@ fn a_reservoir_behind_resistance_and_inductance() {
 /// diode drop in all; the exact answer with that drop is 158.43 V, 89.57 %, 34.78 A.
 #[test]
 fn mohan_capacitor_input_example() {
-    let mut simple = Simple::new(Circuit::Bridge).mains(120.0, 60.0).line(1e-3, 1e-3).reservoir(1000e-6).resistance(20.0);
+    let mut simple = Simple::new(Circuit::Bridge)
+        .mains(120.0, 60.0)
+        .line(1e-3, 1e-3)
+        .reservoir(1000e-6)
+        .resistance(20.0);
     simple.threshold = 1.0;
     let figures = simple.figures();
     let mean = figures.outputs[0].rails[0].voltage.mean;
@@ -166,12 +219,20 @@ fn continuous_line_current_begins_where_theory_says() {
     let boundary = (2.0 / std::f64::consts::PI).atan().sin();
     // Above the boundary current gaps, below it the diodes conduct 180 degrees each.
     let angle = |amperes: f64| {
-        let figures = Simple::new(Circuit::Bridge).line(0.0, 1e4).reservoir(1e3).current(amperes * 1e-4).figures();
+        let figures = Simple::new(Circuit::Bridge)
+            .line(0.0, 1e4)
+            .reservoir(1e3)
+            .current(amperes * 1e-4)
+            .figures();
         let output = &figures.outputs[0];
         (output.rails[0].voltage.mean, output.diodes[0].conduction_angle)
     };
     for amperes in [0.30, 0.32, 0.335, 0.36, 0.4] {
         let (volts, degrees) = angle(amperes);
-        assert_eq!(volts > boundary, degrees < 180.0 - 1e-6, "{amperes} A: {volts} V, {degrees} deg");
+        assert_eq!(
+            volts > boundary,
+            degrees < 180.0 - 1e-6,
+            "{amperes} A: {volts} V, {degrees} deg"
+        );
     }
 }

@@ -12,22 +12,39 @@ fn mean(figures: &Figures) -> f64 {
 /// memory and recomputed.
 #[test]
 fn hart_half_wave_with_capacitor() {
-    let figures = Simple::new(Circuit::HalfWave).mains(120.0, 60.0).reservoir(100e-6).resistance(500.0).figures();
+    let figures = Simple::new(Circuit::HalfWave)
+        .mains(120.0, 60.0)
+        .reservoir(100e-6)
+        .resistance(500.0)
+        .figures();
     let output = &figures.outputs[0];
     printed("ripple", output.rails[0].voltage.ripple_pp, "43.13");
     printed("peak diode current", output.diodes[0].current_peak, "4.515");
     printed("conduction", output.diodes[0].conduction_angle, "44.806");
-    close("turn-on 48.231 to turn-off 93.037 degrees", output.diodes[0].conduction_angle, 93.037 - 48.231, 5e-5);
+    close(
+        "turn-on 48.231 to turn-off 93.037 degrees",
+        output.diodes[0].conduction_angle,
+        93.037 - 48.231,
+        5e-5,
+    );
 }
 
 /// The same data, full-wave (chapter 4). From memory and recomputed.
 #[test]
 fn hart_full_wave_with_capacitor() {
-    let figures = Simple::new(Circuit::Bridge).mains(120.0, 60.0).reservoir(100e-6).resistance(500.0).figures();
+    let figures = Simple::new(Circuit::Bridge)
+        .mains(120.0, 60.0)
+        .reservoir(100e-6)
+        .resistance(500.0)
+        .figures();
     printed("ripple", figures.outputs[0].rails[0].voltage.ripple_pp, "21.88");
     printed("mean", mean(&figures), "159.235");
     // One percent of ripple needs about 1667 uF by the book's small-ripple formula; the exact ripple there is close to it.
-    let large = Simple::new(Circuit::Bridge).mains(120.0, 60.0).reservoir(1667e-6).resistance(500.0).figures();
+    let large = Simple::new(Circuit::Bridge)
+        .mains(120.0, 60.0)
+        .reservoir(1667e-6)
+        .resistance(500.0)
+        .figures();
     let voltage = &large.outputs[0].rails[0].voltage;
     close("one percent of the crest", voltage.ripple_pp / 169.706, 0.01, 0.06);
 }
@@ -61,10 +78,17 @@ fn horowitz_hill_reservoir() {
 /// smaller, since the formula takes the discharge for a whole half cycle.
 #[test]
 fn rashid_full_wave_capacitor_filter() {
-    let figures = Simple::new(Circuit::Bridge).mains(120.0, 60.0).reservoir(126.18e-6).resistance(500.0).figures();
+    let figures = Simple::new(Circuit::Bridge)
+        .mains(120.0, 60.0)
+        .reservoir(126.18e-6)
+        .resistance(500.0)
+        .figures();
     close("mean", mean(&figures), 158.50, 0.02);
     let voltage = &figures.outputs[0].rails[0].voltage;
-    assert!(voltage.ripple_rms / voltage.mean < 0.05, "the formula is on the safe side");
+    assert!(
+        voltage.ripple_rms / voltage.mean < 0.05,
+        "the formula is on the safe side"
+    );
 }
 
 /// The same book, example 3.11: a choke alone, 120 V, 60 Hz, 500 ohm, 6.2169 H for 5 % of ripple. The book counts the lowest
@@ -73,7 +97,9 @@ fn rashid_full_wave_capacitor_filter() {
 fn rashid_choke_filter() {
     let mut simple = Simple::new(Circuit::Bridge).mains(120.0, 60.0);
     simple.sections = vec![(0.0, 6.2169, 0.0, 0.0)];
-    simple.load = Load::Resistance { resistance: band(500.0) };
+    simple.load = Load::Resistance {
+        resistance: band(500.0),
+    };
     let voltage = simple.figures().outputs[0].rails[0].voltage.clone();
     close("mean", voltage.mean, 108.038, 1e-5);
     close("ripple factor", voltage.ripple_rms / voltage.mean, 0.05, 0.02);
@@ -115,7 +141,11 @@ fn critical_inductance_separates_continuous_from_gapped_current() {
 #[test]
 fn sawtooth_ripple_is_an_upper_estimate() {
     for (circuit, pulses) in [(Circuit::HalfWave, 1.0), (Circuit::Bridge, 2.0)] {
-        let figures = Simple::new(circuit).mains(20.0, 50.0).reservoir(10e-3).current(0.5).figures();
+        let figures = Simple::new(circuit)
+            .mains(20.0, 50.0)
+            .reservoir(10e-3)
+            .current(0.5)
+            .figures();
         let estimate = 0.5 / (pulses * 50.0 * 10e-3);
         let found = figures.outputs[0].rails[0].voltage.ripple_pp;
         assert!(found < estimate, "{circuit:?}: {found} under {estimate}");

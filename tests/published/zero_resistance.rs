@@ -7,7 +7,11 @@ use mainstay::supply::Circuit;
 fn a_stiff_source_into_a_reservoir_matches_the_exact_solution() {
     for row in table(include_str!("tables/zero_resistance.csv")) {
         let k: f64 = row["k"].parse().unwrap();
-        for (circuit, kind) in [(Circuit::HalfWave, "half"), (Circuit::Bridge, "full"), (Circuit::CentreTap, "full")] {
+        for (circuit, kind) in [
+            (Circuit::HalfWave, "half"),
+            (Circuit::Bridge, "full"),
+            (Circuit::CentreTap, "full"),
+        ] {
             let figures = Simple::new(circuit).reservoir(k).figures();
             let (rail, diode) = (&figures.outputs[0].rails[0], &figures.outputs[0].diodes[0]);
             let see = |column: &str, found: f64| {

@@ -90,7 +90,11 @@ impl Simple {
         let rms = self.crest / std::f64::consts::SQRT_2;
         let tapped = self.circuit.needs_tap();
         // A tapped circuit has the impedance in each half winding, all others in the line.
-        let (line, half) = if tapped { ((0.0, 0.0), self.line) } else { (self.line, (0.0, 0.0)) };
+        let (line, half) = if tapped {
+            ((0.0, 0.0), self.line)
+        } else {
+            (self.line, (0.0, 0.0))
+        };
         let line_voltage = if three { rms * 3.0_f64.sqrt() } else { rms };
         let section = |&(r, l, c, esr): &(f64, f64, f64, f64)| Section {
             series: (r > 0.0 || l > 0.0).then(|| Series {
@@ -170,15 +174,23 @@ pub fn turn_on_voltage(supply: &Supply) -> f64 {
     let network = Network::of(supply);
     let periodic = solver::solve(&network).unwrap();
     let output = &network.probes.outputs[0];
-    let switch = network.switches.iter().position(|&b| b == output.diodes[0].branch).unwrap();
-    let conducts = |flow: &solver::flow::Flow| {
-        periodic.regimes.get(flow.regime).pattern.conducting >> switch & 1 == 1
-    };
+    let switch = network
+        .switches
+        .iter()
+        .position(|&b| b == output.diodes[0].branch)
+        .unwrap();
+    let conducts = |flow: &solver::flow::Flow| periodic.regimes.get(flow.regime).pattern.conducting >> switch & 1 == 1;
     let flows = &periodic.run.flows;
-    let first = (1..flows.len()).find(|&i| conducts(&flows[i]) && !conducts(&flows[i - 1])).unwrap();
+    let first = (1..flows.len())
+        .find(|&i| conducts(&flows[i]) && !conducts(&flows[i - 1]))
+        .unwrap();
     let (flow, regime) = (&flows[first], periodic.regimes.get(flows[first].regime));
     let mut signal = Vec::new();
-    flow.signal(regime, &regime.modal(&regime.signal(&output.rails[0].voltage)), &mut signal);
+    flow.signal(
+        regime,
+        &regime.modal(&regime.signal(&output.rails[0].voltage)),
+        &mut signal,
+    );
     flow.value(&regime.basis, &signal, 0.0, &mut vec![0.0; regime.basis.width])
 }
 
@@ -186,7 +198,10 @@ pub fn turn_on_voltage(supply: &Supply) -> f64 {
 #[track_caller]
 pub fn close(what: &str, found: f64, expected: f64, relative: f64) {
     let error = (found - expected).abs() / expected.abs().max(f64::MIN_POSITIVE);
-    assert!(error <= relative, "{what}: found {found:.12e}, expected {expected:.12e}, off by {error:.1e}");
+    assert!(
+        error <= relative,
+        "{what}: found {found:.12e}, expected {expected:.12e}, off by {error:.1e}"
+    );
 }
 
 /// Asserts that a number rounds to the digits printed in a table: within 0.51 of the last digit's unit.
@@ -194,7 +209,10 @@ pub fn close(what: &str, found: f64, expected: f64, relative: f64) {
 pub fn printed(what: &str, found: f64, text: &str) {
     let expected: f64 = text.parse().unwrap();
     let unit = last_digit(text);
-    assert!((found - expected).abs() <= 0.51 * unit, "{what}: found {found:.9e}, printed {text}");
+    assert!(
+        (found - expected).abs() <= 0.51 * unit,
+        "{what}: found {found:.9e}, printed {text}"
+    );
 }
 
 /// The unit of the sixth significant digit of a number in a table that drops trailing zeros.
@@ -206,7 +224,9 @@ pub fn significant(text: &str) -> f64 {
 /// The unit of a printed number's last digit.
 pub fn last_digit(text: &str) -> f64 {
     let (mantissa, exponent) = text.split_once(['e', 'E']).unwrap_or((text, "0"));
-    let decimals = mantissa.split_once('.').map_or(0, |(_, fraction)| fraction.len() as i32);
+    let decimals = mantissa
+        .split_once('.')
+        .map_or(0, |(_, fraction)| fraction.len() as i32);
     10.0_f64.powi(exponent.parse::<i32>().unwrap() - decimals)
 }
 

@@ -17,6 +17,9 @@ const LIMIT_MAXIMUM: u64 = 50;
 /// The policy where none is given.
 const POLICY_DEFAULT: &str = "reliability-center-severe";
 
+/// A circuit that was asked for, and where.
+type Named = (Circuit, String);
+
 /// Reads a need and its policy.
 pub(super) fn read(json: &Json) -> Result<(Need, Policy), Vec<Fault>> {
     let faults = Faults::default();
@@ -96,7 +99,10 @@ fn sound(need: &Need, faults: &Faults) {
         surroundings: need.surroundings.clone(),
     };
     for fault in Supply::new(parts).err().unwrap_or_default() {
-        let pointer = fault.pointer.replace("/outputs/0/rails", "/need/rails").replace("/outputs/0/rectifier/diode", "/assume/diode");
+        let pointer = fault
+            .pointer
+            .replace("/outputs/0/rails", "/need/rails")
+            .replace("/outputs/0/rectifier/diode", "/assume/diode");
         faults.note(pointer, fault.detail);
     }
     if volts.low() <= 0.0 {
@@ -104,7 +110,7 @@ fn sound(need: &Need, faults: &Faults) {
     }
 }
 
-fn rails_and_circuits(place: &Place<'_>) -> Option<(Vec<RailNeed>, Vec<(Circuit, String)>)> {
+fn rails_and_circuits(place: &Place<'_>) -> Option<(Vec<RailNeed>, Vec<Named>)> {
     let mut f = place.object()?;
     let rails = f.required("rails").and_then(|p| {
         let rails = read_each(&p, rail)?;
@@ -147,14 +153,13 @@ fn rail(place: &Place<'_>) -> Option<RailNeed> {
 
 fn volts(place: &Place<'_>) -> Option<f64> {
     let value = place.quantity(Dimension::Voltage)?;
-    if value >= 0.1 && value <= bounds::VOLTAGE.maximum {
+    if (0.1..=bounds::VOLTAGE.maximum).contains(&value) {
         return Some(value);
     }
     place.fault("must lie between 100 mV and 100 kV");
     None
 }
 
-#[expect(clippy::option_option, reason = "absent and faulty are different answers")]
 fn optional_volts(f: &mut Fields<'_>, field: &'static str) -> Option<Option<f64>> {
     match f.optional(field) {
         None => Some(None),
@@ -163,7 +168,7 @@ fn optional_volts(f: &mut Fields<'_>, field: &'static str) -> Option<Option<f64>
 }
 
 /// The circuits asked for, each fitting the line and the rails; all that fit where none was named.
-fn fitting(named: Vec<(Circuit, String)>, line: &Line, rails: usize, faults: &Faults) -> Option<Vec<Circuit>> {
+fn fitting(named: Vec<Named>, line: &Line, rails: usize, faults: &Faults) -> Option<Vec<Circuit>> {
     let fit = designable(line.phases, rails);
     if fit.is_empty() {
         faults.note("/need/rails", "no circuit feeds so many rails from this line");
@@ -176,7 +181,10 @@ fn fitting(named: Vec<(Circuit, String)>, line: &Line, rails: usize, faults: &Fa
     for (circuit, pointer) in named {
         if !fit.contains(&circuit) {
             let names: Vec<&str> = fit.iter().map(|c| c.name()).collect();
-            faults.note(pointer, format!("for this line and these rails {} can be designed", names.join(", ")));
+            faults.note(
+                pointer,
+                format!("for this line and these rails {} can be designed", names.join(", ")),
+            );
         } else if !circuits.contains(&circuit) {
             circuits.push(circuit);
         }
@@ -202,7 +210,13 @@ fn minimise(f: &mut Fields<'_>) -> Option<Minimise> {
         place.fault("preferred values have no price; minimise volume or loss");
         return None;
     }
-    place.word(&["volume", "loss"]).map(|word| if word == "loss" { Minimise::Loss } else { Minimise::Volume })
+    place.word(&["volume", "loss"]).map(|word| {
+        if word == "loss" {
+            Minimise::Loss
+        } else {
+            Minimise::Volume
+        }
+    })
 }
 
 fn policy(f: &mut Fields<'_>) -> Option<Policy> {
@@ -237,7 +251,9 @@ fn assumptions(place: &Place<'_>) -> Option<Assumptions> {
 }
 
 fn fraction(f: &mut Fields<'_>, field: &'static str, usual: f64, low: f64, high: f64) -> Option<f64> {
-    let Some(place) = f.optional(field) else { return Some(usual) };
+    let Some(place) = f.optional(field) else {
+        return Some(usual);
+    };
     let value = place.quantity(Dimension::Ratio)?;
     if (low..=high).contains(&value) {
         return Some(value);

@@ -35,7 +35,9 @@ pub(super) fn read(json: &Json, limits: Limits) -> Result<Request, Vec<Fault>> {
         let supply = f.required("supply").and_then(|place| request::supply(&place, &faults));
         let axes = f.optional("axes");
         let random = f.optional("random");
-        let columns = f.required("columns").and_then(|place| columns_wanted(&place, limits.sweep_columns_maximum));
+        let columns = f
+            .required("columns")
+            .and_then(|place| columns_wanted(&place, limits.sweep_columns_maximum));
         f.finish("this request");
         let supply = supply?;
         let (kind, inputs) = match (axes, random) {
@@ -79,7 +81,9 @@ fn si_unit(slot: &Slot) -> &'static str {
 fn columns_wanted(place: &Place<'_>, maximum: usize) -> Option<Vec<(String, String)>> {
     let items = place.list()?;
     if items.is_empty() || items.len() > maximum {
-        place.fault(format!("between 1 and {maximum} columns are taken (--sweep-columns-maximum)"));
+        place.fault(format!(
+            "between 1 and {maximum} columns are taken (--sweep-columns-maximum)"
+        ));
         return None;
     }
     read_each(place, |item| Some((item.text()?.to_owned(), item.pointer.clone())))
@@ -92,8 +96,15 @@ fn bounded(plan: &Plan, limits: Limits, faults: &Faults) {
     };
     let most = limits.sweep_points_maximum;
     if product.is_none_or(|points| points > most) {
-        let pointer = if matches!(plan.kind, PlanKind::Grid(_)) { "/axes" } else { "/random/samples" };
-        faults.note(pointer, format!("more than {most} points; ask for fewer or raise --sweep-points-maximum"));
+        let pointer = if matches!(plan.kind, PlanKind::Grid(_)) {
+            "/axes"
+        } else {
+            "/random/samples"
+        };
+        faults.note(
+            pointer,
+            format!("more than {most} points; ask for fewer or raise --sweep-points-maximum"),
+        );
     }
 }
 
@@ -106,7 +117,10 @@ fn grid(place: &Place<'_>, supply: &Supply, faults: &Faults) -> Option<(PlanKind
     let read: Vec<(Axis, Slot)> = read_each(place, |item| axis(item, supply))?;
     for (index, (axis, _)) in read.iter().enumerate() {
         if read[..index].iter().any(|(other, _)| other.pointer == axis.pointer) {
-            faults.note(format!("{}/{index}/pointer", place.pointer), "another axis sweeps this quantity already");
+            faults.note(
+                format!("{}/{index}/pointer", place.pointer),
+                "another axis sweeps this quantity already",
+            );
         }
     }
     let (axes, slots) = read.into_iter().unzip();
@@ -117,14 +131,21 @@ fn axis(place: &Place<'_>, supply: &Supply) -> Option<(Axis, Slot)> {
     let mut f = place.object()?;
     let slot = f.required("pointer").and_then(|p| slot(&p, supply));
     let values = f.optional("values");
-    let (from, to, points, scale) = (f.optional("from"), f.optional("to"), f.optional("points"), f.optional("scale"));
+    let (from, to, points, scale) = (
+        f.optional("from"),
+        f.optional("to"),
+        f.optional("points"),
+        f.optional("scale"),
+    );
     let pointer = f.pointer().to_owned();
     f.finish("an axis");
     let slot = slot?;
     let dimension = slot.dimension;
     let values = match (values, from, to, points) {
         (Some(values), None, None, None) => {
-            let list = read_each(&values, |v| v.quantity(dimension).filter(|x| holds(v, &slot, supply, *x)))?;
+            let list = read_each(&values, |v| {
+                v.quantity(dimension).filter(|x| holds(v, &slot, supply, *x))
+            })?;
             if list.is_empty() {
                 values.fault("an axis has at least one value");
                 return None;
@@ -135,7 +156,8 @@ fn axis(place: &Place<'_>, supply: &Supply) -> Option<(Axis, Slot)> {
             let (low, high) = (from.quantity(dimension), to.quantity(dimension));
             let points = points.integer(1..=AXIS_POINTS_MAXIMUM);
             let scale = scale.map_or(Some(Scale::Linear), |p| {
-                p.word(&["linear", "log"]).map(|w| if w == "log" { Scale::Logarithmic } else { Scale::Linear })
+                p.word(&["linear", "log"])
+                    .map(|w| if w == "log" { Scale::Logarithmic } else { Scale::Linear })
             });
             let (low, high, points, scale) = (low?, high?, points?, scale?);
             if scale == Scale::Logarithmic && !(low > 0.0 && high > 0.0) {
@@ -171,12 +193,17 @@ fn holds(place: &Place<'_>, slot: &Slot, supply: &Supply, value: f64) -> bool {
 }
 
 fn slot(place: &Place<'_>, supply: &Supply) -> Option<Slot> {
-    supply.quantity(place.text()?).map_err(|error| place.fault(error.to_string())).ok()
+    supply
+        .quantity(place.text()?)
+        .map_err(|error| place.fault(error.to_string()))
+        .ok()
 }
 
 fn draws(place: &Place<'_>, supply: &Supply) -> Option<(PlanKind, Vec<Slot>)> {
     let mut f = place.object()?;
-    let samples = f.required("samples").and_then(|p| p.integer(1..=AXIS_POINTS_MAXIMUM * 10));
+    let samples = f
+        .required("samples")
+        .and_then(|p| p.integer(1..=AXIS_POINTS_MAXIMUM * 10));
     let seed = f.required("seed").and_then(|p| p.integer(0..=SEED_MAXIMUM));
     f.finish("random draws");
     let kind = PlanKind::Random {
@@ -198,7 +225,9 @@ pub(super) fn columns(state: &AppState, mut request: Request) -> Result<Request,
             (None, Some(index)) => (request.plan.inputs.len() + index, shape[index].1),
             (None, None) => {
                 let shown = request::quoted(pointer);
-                let detail = format!("{shown} is neither a figure of this supply nor a quantity that is swept; /v1/figures lists the figures");
+                let detail = format!(
+                    "{shown} is neither a figure of this supply nor a quantity that is swept; /v1/figures lists the figures"
+                );
                 faults.push(Fault::new(place.clone(), detail));
                 continue;
             }
@@ -209,5 +238,9 @@ pub(super) fn columns(state: &AppState, mut request: Request) -> Result<Request,
             unit: unit.to_owned(),
         });
     }
-    if faults.is_empty() { Ok(request) } else { Err(Problem::faulty(faults)) }
+    if faults.is_empty() {
+        Ok(request)
+    } else {
+        Err(Problem::faulty(faults))
+    }
 }

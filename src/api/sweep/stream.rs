@@ -57,7 +57,9 @@ fn head(format: Format, columns: &[SweepColumn]) -> Vec<u8> {
             text
         }
         Format::Csv => {
-            let mut writer = csv::WriterBuilder::new().terminator(csv::Terminator::CRLF).from_writer(Vec::new());
+            let mut writer = csv::WriterBuilder::new()
+                .terminator(csv::Terminator::CRLF)
+                .from_writer(Vec::new());
             let header = columns.iter().map(|c| format!("{} [{}]", c.pointer, c.unit));
             // Writing to memory does not fail.
             let _ = writer.write_record(header);

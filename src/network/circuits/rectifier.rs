@@ -2,9 +2,9 @@
 
 use super::rail::{Bank, Laid, lay_bank, lay_rail};
 use super::{Feed, Mirror};
+use crate::network::Element;
 use crate::network::build::{Builder, Node};
 use crate::network::probes::{DiodeProbe, OutputProbes};
-use crate::network::Element;
 use crate::supply::{self, Capacitor, Circuit};
 
 /// An output laid into the network.

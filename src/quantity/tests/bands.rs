@@ -6,16 +6,8 @@ use crate::quantity::{Band, BandError, End, read_band};
 /// Text, dimension, low, nominal, high.
 const BANDS: &[(&str, Dimension, [f64; 3])] = &[
     ("4700 uF", Capacitance, [4700e-6, 4700e-6, 4700e-6]),
-    (
-        "4700 uF \u{b1}20 %",
-        Capacitance,
-        [3760e-6, 4700e-6, 5640e-6],
-    ),
-    (
-        "4700 uF \u{b1} 20 %",
-        Capacitance,
-        [3760e-6, 4700e-6, 5640e-6],
-    ),
+    ("4700 uF \u{b1}20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
+    ("4700 uF \u{b1} 20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
     ("4700 uF\u{b1}20%", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
     (
         "4700\u{a0}\u{b5}F\u{a0}\u{b1}20\u{a0}%",
@@ -24,54 +16,18 @@ const BANDS: &[(&str, Dimension, [f64; 3])] = &[
     ),
     ("4700 uF +/-20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
     ("4700 uF +/- 20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
-    (
-        "4700 uF +/\u{2212}20 %",
-        Capacitance,
-        [3760e-6, 4700e-6, 5640e-6],
-    ),
+    ("4700 uF +/\u{2212}20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
     ("4700uF+/-20%", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
     ("4700 uF +-20 %", Capacitance, [3760e-6, 4700e-6, 5640e-6]),
-    (
-        "4700 uF -10 %/+50 %",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF -10% / +50%",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF +50 %/-10 %",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF \u{2212}10 %/+50 %",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF \u{2013}10 %/+50 %",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF - 10 %/+ 50 %",
-        Capacitance,
-        [4230e-6, 4700e-6, 7050e-6],
-    ),
-    (
-        "4700 uF -0 %/+100 %",
-        Capacitance,
-        [4700e-6, 4700e-6, 9400e-6],
-    ),
+    ("4700 uF -10 %/+50 %", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF -10% / +50%", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF +50 %/-10 %", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF \u{2212}10 %/+50 %", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF \u{2013}10 %/+50 %", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF - 10 %/+ 50 %", Capacitance, [4230e-6, 4700e-6, 7050e-6]),
+    ("4700 uF -0 %/+100 %", Capacitance, [4700e-6, 4700e-6, 9400e-6]),
     ("4700 uF \u{b1}700 uF", Capacitance, [4e-3, 4.7e-3, 5.4e-3]),
-    (
-        "4700 uF -0.7 mF/+10 %",
-        Capacitance,
-        [4e-3, 4.7e-3, 5170e-6],
-    ),
+    ("4700 uF -0.7 mF/+10 %", Capacitance, [4e-3, 4.7e-3, 5170e-6]),
     ("4700 uF (4 mF to 5 mF)", Capacitance, [4e-3, 4.7e-3, 5e-3]),
     ("4u7 \u{b1}10 %", Capacitance, [4.23e-6, 4.7e-6, 5.17e-6]),
     ("4u7 (4u to 5u6)", Capacitance, [4e-6, 4.7e-6, 5.6e-6]),
@@ -98,11 +54,7 @@ const BANDS: &[(&str, Dimension, [f64; 3])] = &[
     ("8 % (7 % to 9 %)", Ratio, [0.07, 0.08, 0.09]),
     ("25 degC \u{b1}10 K", Temperature, [15.0, 25.0, 35.0]),
     ("25 \u{b0}C -5 K/+15 K", Temperature, [20.0, 25.0, 40.0]),
-    (
-        "25 degC (0 degC to 50 degC)",
-        Temperature,
-        [0.0, 25.0, 50.0],
-    ),
+    ("25 degC (0 degC to 50 degC)", Temperature, [0.0, 25.0, 50.0]),
     ("-20 degC \u{b1}10 %", Temperature, [-22.0, -20.0, -18.0]),
     ("180 deg \u{b1}15 deg", Angle, [165.0, 180.0, 195.0]),
     ("180\u{b0}\u{b1}15\u{b0}", Angle, [165.0, 180.0, 195.0]),
@@ -126,10 +78,7 @@ fn bands_read_in_every_spelling_with_one_rounding() {
 #[test]
 fn a_band_is_finite_and_ordered_by_construction() {
     assert_eq!(Band::new(1.0, f64::NAN, 2.0), Err(BandError::NotFinite));
-    assert_eq!(
-        Band::new(f64::NEG_INFINITY, 1.0, 2.0),
-        Err(BandError::NotFinite)
-    );
+    assert_eq!(Band::new(f64::NEG_INFINITY, 1.0, 2.0), Err(BandError::NotFinite));
     assert_eq!(Band::point(f64::INFINITY), Err(BandError::NotFinite));
     assert_eq!(Band::new(2.0, 1.0, 3.0), Err(BandError::Disordered));
     assert_eq!(Band::new(1.0, 4.0, 3.0), Err(BandError::Disordered));

@@ -45,9 +45,7 @@ fn the_series_hold_the_values_of_the_standard() {
     );
     assert_eq!(
         Series::E96.values()[..12],
-        [
-            1.0, 1.02, 1.05, 1.07, 1.1, 1.13, 1.15, 1.18, 1.21, 1.24, 1.27, 1.3
-        ]
+        [1.0, 1.02, 1.05, 1.07, 1.1, 1.13, 1.15, 1.18, 1.21, 1.24, 1.27, 1.3]
     );
     assert_eq!(
         Series::E96.values()[88..],
@@ -56,11 +54,7 @@ fn the_series_hold_the_values_of_the_standard() {
     for (series, count) in ALL.into_iter().zip([3, 6, 12, 24, 48, 96]) {
         let values = series.values();
         assert_eq!(values.len(), count);
-        assert!(
-            values[0] == 1.0
-                && values.is_sorted_by(|a, b| a < b)
-                && values.iter().all(|v| *v < 10.0)
-        );
+        assert!(values[0] == 1.0 && values.is_sorted_by(|a, b| a < b) && values.iter().all(|v| *v < 10.0));
     }
 }
 
@@ -90,10 +84,7 @@ fn a_preferred_value_is_its_own_neighbour_to_within_rounding() {
                         "{series:?} {value:e}"
                     );
                 }
-                assert!(
-                    series.up(value * 1.0001) > Some(value)
-                        && series.down(value * 0.9999) < Some(value)
-                );
+                assert!(series.up(value * 1.0001) > Some(value) && series.down(value * 0.9999) < Some(value));
             }
         }
     }
@@ -101,10 +92,7 @@ fn a_preferred_value_is_its_own_neighbour_to_within_rounding() {
 
 #[test]
 fn around_counts_neighbours_on_either_side() {
-    assert_eq!(
-        Series::E6.around(4.7e-3, 1, 2),
-        [3.3e-3, 4.7e-3, 6.8e-3, 10e-3]
-    );
+    assert_eq!(Series::E6.around(4.7e-3, 1, 2), [3.3e-3, 4.7e-3, 6.8e-3, 10e-3]);
     assert_eq!(Series::E6.around(5e-3, 1, 2), [4.7e-3, 6.8e-3, 10e-3]);
     assert_eq!(Series::E6.around(5e-3, 0, 0), [0.0; 0]);
     assert_eq!(Series::E6.around(1.0, 0, 0), [1.0]);

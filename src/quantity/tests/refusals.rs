@@ -85,12 +85,7 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
     ("1e-400 V", Voltage, "Underflow", "too small"),
     ("1e-99999 V", Voltage, "Underflow", "too small"),
     ("1e-310 V", Voltage, "Underflow", "too small"),
-    (
-        "2.2250738585072009e-308 V",
-        Voltage,
-        "Underflow",
-        "too small",
-    ),
+    ("2.2250738585072009e-308 V", Voltage, "Underflow", "too small"),
     ("1e-300 pF", Capacitance, "Underflow", "write 0"),
     ("1e-307 %", Ratio, "Underflow", "too small"),
     (
@@ -105,31 +100,11 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
         "WrongDimension",
         "resistance, but an inductance is wanted, for example \"0.4 mH\"",
     ),
-    (
-        "60 W",
-        ApparentPower,
-        "WrongDimension",
-        "power, but an apparent power",
-    ),
-    (
-        "60 VA",
-        Power,
-        "WrongDimension",
-        "apparent power, but a power",
-    ),
+    ("60 W", ApparentPower, "WrongDimension", "power, but an apparent power"),
+    ("60 VA", Power, "WrongDimension", "apparent power, but a power"),
     ("5 mV", Current, "WrongDimension", "voltage"),
-    (
-        "5 K",
-        Temperature,
-        "WrongDimension",
-        "temperature difference",
-    ),
-    (
-        "5 degC",
-        TemperatureDifference,
-        "WrongDimension",
-        "temperature",
-    ),
+    ("5 K", Temperature, "WrongDimension", "temperature difference"),
+    ("5 degC", TemperatureDifference, "WrongDimension", "temperature"),
     ("45 C", Temperature, "WrongDimension", "charge"),
     ("45 deg", Temperature, "WrongDimension", "angle"),
     ("45 degC", Angle, "WrongDimension", "temperature"),
@@ -143,12 +118,7 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
     ("5 A2s", Energy, "WrongDimension", "joule integral"),
     ("5 mm", Resistance, "WrongDimension", "length"),
     ("10 m\u{3a9}", Capacitance, "WrongDimension", "resistance"),
-    (
-        "5 KV",
-        Voltage,
-        "UnknownUnit",
-        "kilo is a small k: write \"kV\"",
-    ),
+    ("5 KV", Voltage, "UnknownUnit", "kilo is a small k: write \"kV\""),
     ("4.7 Kohm", Resistance, "UnknownUnit", "write \"kohm\""),
     ("4.7 K\u{3a9}", Resistance, "UnknownUnit", "kilo"),
     (
@@ -163,26 +133,11 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
     ("5 K", Voltage, "UnknownUnit", "write \"kV\""),
     ("4k7", Voltage, "UnknownUnit", "not a unit of voltage"),
     ("4n7", Resistance, "UnknownUnit", "not a unit of resistance"),
-    (
-        "4R7",
-        Capacitance,
-        "UnknownUnit",
-        "not a unit of capacitance",
-    ),
+    ("4R7", Capacitance, "UnknownUnit", "not a unit of capacitance"),
     ("-4k7", Resistance, "UnknownUnit", "not a unit"),
     ("4k7k", Resistance, "UnknownUnit", "not a unit"),
-    (
-        "5 volts",
-        Voltage,
-        "UnknownUnit",
-        "write for example \"230 V\"",
-    ),
-    (
-        "5 ohms",
-        Resistance,
-        "UnknownUnit",
-        "not a unit of resistance",
-    ),
+    ("5 volts", Voltage, "UnknownUnit", "write for example \"230 V\""),
+    ("5 ohms", Resistance, "UnknownUnit", "not a unit of resistance"),
     ("5 v", Voltage, "UnknownUnit", "write \"V\""),
     ("5 mv", Voltage, "UnknownUnit", "write \"mV\""),
     ("50 hz", Frequency, "UnknownUnit", "write \"Hz\""),
@@ -212,12 +167,7 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
     ("5 V\n", Voltage, "Character", "no place"),
     ("5 V\0", Voltage, "Character", "no place"),
     ("\u{661} V", Voltage, "Character", "no place"),
-    (
-        "230 V \u{b1}10",
-        Voltage,
-        "Tolerance",
-        "a unit on each number",
-    ),
+    ("230 V \u{b1}10", Voltage, "Tolerance", "a unit on each number"),
     ("230 V \u{b1}", Voltage, "Tolerance", "not a tolerance"),
     ("230 V \u{b1}-10 %", Voltage, "Tolerance", "not a tolerance"),
     ("230 V \u{b1}+10 %", Voltage, "Tolerance", "not a tolerance"),
@@ -226,38 +176,13 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
     ("230 V -10 %", Voltage, "Tolerance", "not a tolerance"),
     ("230 V -10 %/-5 %", Voltage, "Tolerance", "not a tolerance"),
     ("230 V +10 %/+5 %", Voltage, "Tolerance", "not a tolerance"),
-    (
-        "230 V -10/+10 %",
-        Voltage,
-        "Tolerance",
-        "a unit on each number",
-    ),
-    (
-        "230 V \u{b1}10 % extra",
-        Voltage,
-        "Tolerance",
-        "not a tolerance",
-    ),
+    ("230 V -10/+10 %", Voltage, "Tolerance", "a unit on each number"),
+    ("230 V \u{b1}10 % extra", Voltage, "Tolerance", "not a tolerance"),
     ("230 V \u{b1}10 %%", Voltage, "UnknownUnit", "ratio"),
     ("230 V (200 V)", Voltage, "Tolerance", "not a tolerance"),
-    (
-        "230 V (200 V to 240 V",
-        Voltage,
-        "Tolerance",
-        "not a tolerance",
-    ),
-    (
-        "230 V (200 V to 240 V) x",
-        Voltage,
-        "Tolerance",
-        "not a tolerance",
-    ),
-    (
-        "230 V (200 V - 240 V)",
-        Voltage,
-        "Tolerance",
-        "(0.05 A to 1.4 A)",
-    ),
+    ("230 V (200 V to 240 V", Voltage, "Tolerance", "not a tolerance"),
+    ("230 V (200 V to 240 V) x", Voltage, "Tolerance", "not a tolerance"),
+    ("230 V (200 V - 240 V)", Voltage, "Tolerance", "(0.05 A to 1.4 A)"),
     ("230 V V", Voltage, "Tolerance", "not a tolerance"),
     ("4k7 ohm", Resistance, "Tolerance", "not a tolerance"),
     ("230 V \u{b1}10 A", Voltage, "WrongDimension", "current"),
@@ -267,34 +192,19 @@ const REFUSALS: &[(&str, Dimension, &str, &str)] = &[
         "WrongDimension",
         "temperature difference is wanted, for example \"10 K\"",
     ),
-    (
-        "230 V (200 A to 240 V)",
-        Voltage,
-        "WrongDimension",
-        "current",
-    ),
+    ("230 V (200 A to 240 V)", Voltage, "WrongDimension", "current"),
     ("230 V (200 V to 240)", Voltage, "NoUnit", "no unit"),
     ("230 V (200 to 240 V)", Voltage, "UnknownUnit", "not a unit"),
     ("230 V ()", Voltage, "NoNumber", "number"),
     ("230 V \u{b1}10,5 %", Voltage, "DecimalComma", "comma"),
-    (
-        "230 V (260 V to 200 V)",
-        Voltage,
-        "Inverted",
-        "low end first",
-    ),
+    ("230 V (260 V to 200 V)", Voltage, "Inverted", "low end first"),
     (
         "230 V (240 V to 260 V)",
         Voltage,
         "NominalOutside",
         "low <= nominal <= high",
     ),
-    (
-        "230 V (200 V to 220 V)",
-        Voltage,
-        "NominalOutside",
-        "outside",
-    ),
+    ("230 V (200 V to 220 V)", Voltage, "NominalOutside", "outside"),
     ("1.7e308 V \u{b1}10 %", Voltage, "Overflow", "too large"),
     ("1e-307 V \u{b1}99.99 %", Voltage, "Underflow", "too small"),
 ];
@@ -333,9 +243,7 @@ fn a_band_is_refused_where_one_value_is_wanted() {
         let error = read_quantity(text, Voltage).expect_err(text);
         assert_eq!(error, QuantityError::NotAlone { dimension: Voltage });
         assert!(
-            error
-                .to_string()
-                .contains("a voltage alone, for example \"230 V\""),
+            error.to_string().contains("a voltage alone, for example \"230 V\""),
             "{error}"
         );
     }
@@ -346,12 +254,7 @@ fn the_bound_on_the_text_counts_characters() {
     let padded = |length: usize| format!("{}5 \u{3a9}", "0".repeat(length - 3));
     assert_eq!(read_quantity(&padded(TEXT_MAXIMUM), Resistance), Ok(5.0));
     let error = read_quantity(&padded(TEXT_MAXIMUM + 1), Resistance).expect_err("too long");
-    assert_eq!(
-        error,
-        QuantityError::TooLong {
-            dimension: Resistance
-        }
-    );
+    assert_eq!(error, QuantityError::TooLong { dimension: Resistance });
     let long = "9".repeat(1 << 20);
     assert_eq!(
         read_band(&long, Voltage),

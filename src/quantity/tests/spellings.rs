@@ -5,11 +5,7 @@ use crate::quantity::read_quantity;
 
 fn reads(text: &str, dimension: Dimension, value: f64) {
     let found = read_quantity(text, dimension).unwrap_or_else(|error| panic!("{text:?}: {error}"));
-    assert_eq!(
-        found.to_bits(),
-        value.to_bits(),
-        "{text:?}: {found:e} for {value:e}"
-    );
+    assert_eq!(found.to_bits(), value.to_bits(), "{text:?}: {found:e} for {value:e}");
 }
 
 /// Units, prefixes and the places where spaces may stand.
@@ -159,18 +155,10 @@ const SPELLINGS: &[(&str, Dimension, f64)] = &[
         Voltage,
         0.1,
     ),
-    (
-        "3.14159265358979323846264338327950288 V",
-        Voltage,
-        std::f64::consts::PI,
-    ),
+    ("3.14159265358979323846264338327950288 V", Voltage, std::f64::consts::PI),
     // Halfway between two doubles: to the even one; a hair above: up.
     ("9007199254740993 V", Voltage, 9_007_199_254_740_992.0),
-    (
-        "9007199254740993.0000000001 V",
-        Voltage,
-        9_007_199_254_740_994.0,
-    ),
+    ("9007199254740993.0000000001 V", Voltage, 9_007_199_254_740_994.0),
 ];
 
 #[test]
@@ -249,12 +237,6 @@ fn every_dimension_reads_its_own_example_and_its_own_unit() {
             dimension,
             if dimension == Ratio { 0.01 } else { 1.0 },
         );
-        assert!(
-            dimension.unit().is_ascii()
-                && dimension
-                    .name()
-                    .chars()
-                    .all(|c| c == ' ' || c.is_ascii_lowercase())
-        );
+        assert!(dimension.unit().is_ascii() && dimension.name().chars().all(|c| c == ' ' || c.is_ascii_lowercase()));
     }
 }

@@ -61,11 +61,7 @@ fn a_band_is_written_in_its_shortest_form() {
         ("1 mV (1 mV to 100 V)", Voltage, "1 mV (1 mV to 100 V)"),
         ("8 % (7 % to 9 %)", Ratio, "8 % \u{b1}1 %"),
         ("8 % (5 % to 9 %)", Ratio, "8 % (5 % to 9 %)"),
-        (
-            "25 degC (0 degC to 50 degC)",
-            Temperature,
-            "25 degC \u{b1}25 K",
-        ),
+        ("25 degC (0 degC to 50 degC)", Temperature, "25 degC \u{b1}25 K"),
         ("25 degC \u{b1}10 %", Temperature, "25 degC \u{b1}2.5 K"),
         (
             "25 degC (-10 degC to 40 degC)",
@@ -86,10 +82,7 @@ fn what_cannot_be_read_is_never_written_as_something_else() {
     for value in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, 5e-324, -1e-310] {
         for dimension in Dimension::ALL {
             let text = write_quantity(value, dimension);
-            assert!(
-                read_band(&text, dimension).is_err(),
-                "{value:e} became {text:?}"
-            );
+            assert!(read_band(&text, dimension).is_err(), "{value:e} became {text:?}");
         }
     }
 }
