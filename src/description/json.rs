@@ -161,3 +161,70 @@ impl<'de> Visitor<'de> for Seed {
         Ok(Json::Object(entries))
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn refusal(text: &str) -> NotJson {
+        read(text.as_bytes()).unwrap_err()
+    }
+
+    #[test]
+    fn every_kind_of_value_is_read_in_the_order_written() {
+        let json = read(br#" {"b": [null, true, -1, 2.5e-3, "\u00b5"], "a": {}} "#).unwrap();
+        let items = vec![
+            Json::Null,
+            Json::Bool(true),
+            Json::Number(-1.0),
+            Json::Number(0.0025),
+            Json::String("µ".to_owned()),
+        ];
+        let entries = vec![
+            ("b".to_owned(), Json::Array(items)),
+            ("a".to_owned(), Json::Object(vec![])),
+        ];
+        assert_eq!(json, Json::Object(entries));
+    }
+
+    #[test]
+    fn a_key_given_twice_is_there_twice() {
+        let Json::Object(entries) = read(br#"{"a": 1, "a": 2}"#).unwrap() else {
+            panic!("not an object")
+        };
+        assert_eq!(entries.len(), 2);
+        assert!(entries.iter().all(|(key, _)| key == "a"));
+    }
+
+    #[test]
+    fn a_refusal_names_its_place() {
+        let error = refusal("{\n  \"a\": nope\n}");
+        assert_eq!((error.line, error.column), (2, 9), "{error}");
+        assert!(error.to_string().ends_with("at line 2, column 9"));
+    }
+
+    #[test]
+    fn numbers_without_a_finite_value_are_refused() {
+        for text in ["1e999", "-1e999", "NaN", "Infinity", "[1e309]"] {
+            refusal(text);
+        }
+        assert_eq!(read(b"1.7976931348623157e308").unwrap(), Json::Number(f64::MAX));
+    }
+
+    #[test]
+    fn nesting_is_read_to_its_bound_and_no_deeper() {
+        let nested = |depth: usize| format!("{}{}", "[".repeat(depth), "]".repeat(depth));
+        assert!(read(nested(DEPTH_MAXIMUM).as_bytes()).is_ok());
+        assert!(refusal(&nested(DEPTH_MAXIMUM + 1)).detail.contains("32 levels"));
+        assert!(refusal(&nested(100_000)).detail.len() <= 200);
+    }
+
+    #[test]
+    fn entries_are_read_to_their_bound_and_no_further() {
+        let list = |count: usize| format!("[{}]", vec!["0"; count].join(","));
+        assert!(read(list(ENTRIES_MAXIMUM).as_bytes()).is_ok());
+        assert!(refusal(&list(ENTRIES_MAXIMUM + 1)).detail.contains("10000 entries"));
+        let keys: Vec<String> = (0..=ENTRIES_MAXIMUM).map(|i| format!("\"{i}\":0")).collect();
+        refusal(&format!("{{{}}}", keys.join(",")));
+    }
+}
