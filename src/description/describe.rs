@@ -165,11 +165,11 @@ fn section(section: &Section) -> form::Section {
 }
 
 fn load(load: &Load) -> form::Load {
-    match load {
-        Load::Resistance { resistance } => form::Load::Resistance {
+    form::Load(match load {
+        Load::Resistance { resistance } => form::LoadKind::Resistance {
             resistance: q::Resistance::of(resistance),
         },
-        Load::Current { current } => form::Load::Current {
+        Load::Current { current } => form::LoadKind::Current {
             current: q::Current::of(current),
         },
         Load::Regulator {
@@ -177,12 +177,12 @@ fn load(load: &Load) -> form::Load {
             output_current,
             dropout,
             quiescent_current,
-        } => form::Load::Regulator {
+        } => form::LoadKind::Regulator {
             output_voltage: q::Voltage::of(output_voltage),
             output_current: q::Current::of(output_current),
             dropout: q::Voltage::of(dropout),
             quiescent_current: unless_zero(quiescent_current, q::Current::of),
         },
-        Load::Open => form::Load::Open {},
-    }
+        Load::Open => form::LoadKind::Open {},
+    })
 }

@@ -2,6 +2,10 @@
 //!
 //! These types are written out and documented; reading goes through [`super::read`], which finds every fault.
 
+mod load;
+
+pub use load::{Load, LoadKind};
+
 use super::quantities::{
     Angle, ApparentPower, Capacitance, Current, Frequency, Inductance, Life, Power, Ratio, Resistance, Temperature,
     Voltage,
@@ -81,7 +85,7 @@ pub struct Harmonic {
 pub struct Transformer {
     /// Rated volts, rms; line to line when the line has three phases.
     pub primary_voltage: Voltage,
-    /// Ohms.
+    /// Ohms of the primary's copper; given with `open_circuit_voltage` and `resistance`, left out with `regulation`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub primary_resistance: Option<Resistance>,
@@ -92,7 +96,8 @@ pub struct Transformer {
     /// The secondary windings.
     #[schema(min_items = 1, max_items = 8)]
     pub windings: Vec<Winding>,
-    /// `(open-circuit voltage - rated voltage) / rated voltage`, every winding at its rated current.
+    /// Percent: `(open-circuit voltage - rated voltage) / rated voltage`, every winding at its rated current. Given with
+    /// `rated_voltage` and `rated_current`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub regulation: Option<Ratio>,
@@ -106,23 +111,24 @@ pub struct Transformer {
     pub core_loss: Option<Power>,
 }
 
-/// A secondary winding; of each half where it is tapped.
+/// A secondary winding, of each half where it is tapped: either `open_circuit_voltage` with `resistance`, or `rated_voltage` with
+/// `rated_current`, the same pair in all windings of a transformer.
 #[derive(Clone, Debug, PartialEq, Serialize, ToSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Winding {
-    /// Rms volts without load, with `primary_voltage` on the primary.
+    /// Rms volts without load, with `primary_voltage` on the primary; line to line for three phases. Goes with `resistance`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub open_circuit_voltage: Option<Voltage>,
-    /// Ohms.
+    /// Ohms of copper. Goes with `open_circuit_voltage`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub resistance: Option<Resistance>,
-    /// Rms volts at rated current.
+    /// Rms volts at rated current, with `primary_voltage` on the primary. Goes with `rated_current`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub rated_voltage: Option<Voltage>,
-    /// Rms amperes.
+    /// Rms amperes. Goes with `rated_voltage` and the transformer's `regulation`.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub rated_current: Option<Current>,
@@ -136,7 +142,8 @@ pub struct Winding {
 #[derive(Clone, Debug, PartialEq, Serialize, ToSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Output {
-    /// Index into the transformer's windings; 0 where left out.
+    /// Index into the transformer's windings, from 0; 0 where left out, and on the line itself. Outputs on one winding are all with
+    /// or all without its tap.
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false, minimum = 0, maximum = 7, example = 0)]
     pub winding: Option<u32>,
@@ -302,42 +309,6 @@ pub struct CapacitorRatings {
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(nullable = false)]
     pub temperature: Option<Temperature>,
-}
-
-/// What a rail feeds.
-#[derive(Clone, Debug, PartialEq, Serialize, ToSchema)]
-#[serde(tag = "kind", rename_all = "lowercase", deny_unknown_fields)]
-pub enum Load {
-    /// A resistor.
-    #[schema(title = "ResistanceLoad")]
-    Resistance {
-        /// Ohms.
-        resistance: Resistance,
-    },
-    /// A current, drawn as long as the rail is above zero.
-    #[schema(title = "CurrentLoad")]
-    Current {
-        /// Amperes.
-        current: Current,
-    },
-    /// A linear regulator and the load behind it. With `v` the rail voltage it draws
-    /// `quiescent_current + min(output_current, max(0, v - dropout) * output_current / output_voltage)`.
-    #[schema(title = "RegulatorLoad")]
-    Regulator {
-        /// Regulated voltage in volts.
-        output_voltage: Voltage,
-        /// Amperes drawn at the regulated voltage.
-        output_current: Current,
-        /// Volts between rail and output below which regulation ends.
-        dropout: Voltage,
-        /// The regulator's own current in amperes; 0 where left out.
-        #[serde(skip_serializing_if = "Option::is_none")]
-        #[schema(nullable = false)]
-        quiescent_current: Option<Current>,
-    },
-    /// Nothing.
-    #[schema(title = "OpenLoad")]
-    Open {},
 }
 
 /// Where the supply lives.

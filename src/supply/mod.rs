@@ -13,6 +13,9 @@ mod rectifier;
 mod sound;
 mod transformer;
 
+#[cfg(test)]
+mod tests;
+
 pub use address::{NoSuchQuantity, Slot};
 pub use fault::Fault;
 pub use filter::{Capacitor, CapacitorRatings, Section, Series};

@@ -1,44 +1,97 @@
 //! The rules that make a supply sound.
 
 use super::address::walk;
-use super::{Circuit, Fault, Load, Output, Parts, Phases, Transformer, WindingValues};
+use super::{Circuit, Fault, Harmonic, Load, Output, Parts, Phases, Rail, Transformer, WindingValues};
 use crate::bounds::{self, Range};
 use crate::quantity::{Band, Dimension, write_quantity};
 
-/// Every fault of the parts, in the order of a description.
+/// Tells whether the value at a pointer is known, or stands in for one that could not be read.
+type Known<'a> = &'a dyn Fn(&str) -> bool;
+
+/// The faults found so far. A fault counts only where all that it rests on is known.
+struct Findings<'a> {
+    known: Option<Known<'a>>,
+    list: Vec<Fault>,
+}
+
+impl Findings<'_> {
+    fn knows(&self, pointer: &str) -> bool {
+        self.known.is_none_or(|known| known(pointer))
+    }
+
+    /// Adds a fault at a field, which rests on that field and on `others`.
+    fn add(&mut self, pointer: impl Into<String>, detail: impl Into<String>, others: &[&str]) {
+        let pointer = pointer.into();
+        if self.knows(&pointer) && others.iter().all(|other| self.knows(other)) {
+            self.list.push(Fault::new(pointer, detail));
+        }
+    }
+}
+
+impl Parts {
+    /// The faults of parts in which some values stand in for others that could not be read: `known` tells by JSON Pointer
+    /// which do not, and a rule that rests on any other is left out. In the order of the rules.
+    #[must_use]
+    pub fn faults(&self, known: &dyn Fn(&str) -> bool) -> Vec<Fault> {
+        judge(self, Some(known))
+    }
+}
+
+/// Every fault of the parts, in the order of the rules.
 pub(super) fn faults(parts: &Parts) -> Vec<Fault> {
-    let mut faults = Vec::new();
-    ranges(parts, &mut faults);
-    line(parts, &mut faults);
+    judge(parts, None)
+}
+
+/// All values are known where `known` is left out.
+fn judge(parts: &Parts, known: Option<Known<'_>>) -> Vec<Fault> {
+    let mut found = Findings {
+        known,
+        list: Vec::new(),
+    };
+    ranges(parts, &mut found);
+    line(parts, &mut found);
     if let Some(transformer) = &parts.transformer {
-        windings(transformer, &mut faults);
+        windings(transformer, &mut found);
     }
     if parts.outputs.is_empty() {
-        faults.push(Fault::new("/outputs", "a supply has at least one output"));
+        found.add("/outputs", "a supply has at least one output", &[]);
     }
     let most = bounds::OUTPUTS_MAXIMUM;
     if parts.outputs.len() > most {
-        faults.push(Fault::new(
-            "/outputs",
-            format!("at most {most} outputs are solved together"),
-        ));
+        found.add("/outputs", format!("at most {most} outputs are solved together"), &[]);
     }
     for (index, output) in parts.outputs.iter().enumerate() {
-        output_faults(parts, output, &format!("/outputs/{index}"), &mut faults);
-        let tap = output.rectifier.circuit.needs_tap();
-        let others = &parts.outputs[..index];
-        if others
-            .iter()
-            .any(|o| o.winding == output.winding && o.rectifier.circuit.needs_tap() != tap)
-        {
-            let detail = "an earlier output uses this winding the other way: a winding either has a tap or has none";
-            faults.push(Fault::new(format!("/outputs/{index}/winding"), detail));
-        }
+        output_faults(parts, output, &format!("/outputs/{index}"), &mut found);
+        taps(parts, index, &mut found);
     }
-    faults
+    found.list
 }
 
-fn ranges(parts: &Parts, faults: &mut Vec<Fault>) {
+/// A winding has a tap or has none, for all outputs on it alike.
+fn taps(parts: &Parts, index: usize, found: &mut Findings<'_>) {
+    let output = &parts.outputs[index];
+    let exists = parts
+        .transformer
+        .as_ref()
+        .is_some_and(|t| output.winding < t.windings.len());
+    let tap = output.rectifier.circuit.needs_tap();
+    let differs = |(other, o): (usize, &Output)| {
+        o.winding == output.winding
+            && o.rectifier.circuit.needs_tap() != tap
+            && found.knows(&format!("/outputs/{other}/winding"))
+            && found.knows(&format!("/outputs/{other}/rectifier/circuit"))
+    };
+    if exists && parts.outputs[..index].iter().enumerate().any(differs) {
+        let detail = "an earlier output uses this winding the other way: a winding either has a tap or has none";
+        found.add(
+            format!("/outputs/{index}/winding"),
+            detail,
+            &[&format!("/outputs/{index}/rectifier/circuit")],
+        );
+    }
+}
+
+fn ranges(parts: &Parts, found: &mut Findings<'_>) {
     let mut copy = parts.clone();
     walk(&mut copy, &mut |visit, band| {
         let fault = match (visit.range, visit.dimension) {
@@ -52,7 +105,7 @@ fn ranges(parts: &Parts, faults: &mut Vec<Fault>) {
             ),
         };
         if let Some(detail) = fault {
-            faults.push(Fault::new(visit.pointer, detail));
+            found.add(visit.pointer, detail, &[]);
         }
     });
 }
@@ -65,7 +118,7 @@ fn outside(range: Range, dimension: Dimension, band: &Band) -> Option<String> {
     }
     let zero = if range.zero { "0 or " } else { "" };
     Some(format!(
-        "a {} here is {zero}between {} and {}",
+        "this {} must be {zero}between {} and {}",
         dimension.name(),
         write_quantity(range.minimum, dimension),
         write_quantity(range.maximum, dimension),
@@ -82,84 +135,85 @@ fn beyond(minimum: f64, maximum: f64, dimension: Dimension, band: &Band) -> Opti
     })
 }
 
-fn line(parts: &Parts, faults: &mut Vec<Fault>) {
+fn line(parts: &Parts, found: &mut Findings<'_>) {
     let harmonics = &parts.line.harmonics;
     if harmonics.len() > bounds::HARMONICS_MAXIMUM {
         let most = bounds::HARMONICS_MAXIMUM;
-        faults.push(Fault::new(
-            "/line/harmonics",
-            format!("at most {most} harmonics are taken"),
-        ));
+        found.add("/line/harmonics", format!("at most {most} harmonics are taken"), &[]);
     }
     for (index, harmonic) in harmonics.iter().enumerate() {
         let pointer = format!("/line/harmonics/{index}/order");
+        let same = |(other, h): (usize, &Harmonic)| {
+            h.order == harmonic.order && found.knows(&format!("/line/harmonics/{other}/order"))
+        };
         if harmonic.order < 2 || harmonic.order > bounds::HARMONIC_ORDER_MAXIMUM {
             let most = bounds::HARMONIC_ORDER_MAXIMUM;
-            faults.push(Fault::new(pointer, format!("an order lies between 2 and {most}")));
-        } else if harmonics[..index].iter().any(|other| other.order == harmonic.order) {
-            faults.push(Fault::new(pointer, format!("order {} is given twice", harmonic.order)));
+            found.add(pointer, format!("an order lies between 2 and {most}"), &[]);
+        } else if harmonics[..index].iter().enumerate().any(same) {
+            found.add(pointer, format!("order {} is given twice", harmonic.order), &[]);
         }
     }
 }
 
-fn windings(transformer: &Transformer, faults: &mut Vec<Fault>) {
+fn windings(transformer: &Transformer, found: &mut Findings<'_>) {
     let count = transformer.windings.len();
     if count == 0 || count > bounds::WINDINGS_MAXIMUM {
         let most = bounds::WINDINGS_MAXIMUM;
-        faults.push(Fault::new(
+        found.add(
             "/transformer/windings",
             format!("a transformer has between 1 and {most} windings"),
-        ));
+            &[],
+        );
     }
-    let nameplates = transformer
-        .windings
-        .iter()
-        .filter(|w| matches!(w.values, WindingValues::Nameplate { .. }))
-        .count();
-    if nameplates > 0 && nameplates < count {
-        faults.push(Fault::new(
-            "/transformer/windings",
+    let (mut nameplates, mut measured) = (false, false);
+    for (index, winding) in transformer.windings.iter().enumerate() {
+        if found.knows(&format!("/transformer/windings/{index}")) {
+            let is_nameplate = matches!(winding.values, WindingValues::Nameplate { .. });
+            nameplates |= is_nameplate;
+            measured |= !is_nameplate;
+        }
+    }
+    let mut add = |field: &str, detail: &str| found.add(format!("/transformer/{field}"), detail, &[]);
+    if nameplates && measured {
+        add(
+            "windings",
             "give either rated_voltage and rated_current for every winding, or open_circuit_voltage and resistance for every winding",
-        ));
+        );
     }
-    if nameplates > 0 && transformer.regulation.is_none() {
-        faults.push(Fault::new(
-            "/transformer/regulation",
+    if nameplates && transformer.regulation.is_none() {
+        add(
+            "regulation",
             "is needed to derive the resistances of windings given by rated_voltage and rated_current, for example \"12 %\"",
-        ));
+        );
     }
-    if nameplates == 0 {
-        if transformer.primary_resistance.is_none() {
-            faults.push(Fault::new(
-                "/transformer/primary_resistance",
-                "is needed, for example \"11 ohm\"",
-            ));
-        }
-        if transformer.regulation.is_some() {
-            faults.push(Fault::new(
-                "/transformer/regulation",
-                "goes with rated_voltage and rated_current; where the resistances are given it has no meaning",
-            ));
-        }
-    }
-    if nameplates > 0 && transformer.primary_resistance.is_some() {
-        faults.push(Fault::new(
-            "/transformer/primary_resistance",
+    if nameplates && transformer.primary_resistance.is_some() {
+        add(
+            "primary_resistance",
             "is derived from the regulation; give one or the other",
-        ));
+        );
+    }
+    if measured && !nameplates && transformer.primary_resistance.is_none() {
+        add("primary_resistance", "is needed, for example \"11 ohm\"");
+    }
+    if measured && !nameplates && transformer.regulation.is_some() {
+        add(
+            "regulation",
+            "goes with rated_voltage and rated_current; where the resistances are given it has no meaning",
+        );
     }
 }
 
-fn output_faults(parts: &Parts, output: &Output, at: &str, faults: &mut Vec<Fault>) {
+fn output_faults(parts: &Parts, output: &Output, at: &str, found: &mut Findings<'_>) {
     let circuit = output.rectifier.circuit;
     let name = circuit.name();
+    let circuit_at = format!("{at}/rectifier/circuit");
     let winding_exists = parts
         .transformer
         .as_ref()
         .map_or(output.winding == 0, |t| output.winding < t.windings.len());
     if !winding_exists {
         let detail = format!("there is no winding {} (they count from 0)", output.winding);
-        faults.push(Fault::new(format!("{at}/winding"), detail));
+        found.add(format!("{at}/winding"), detail, &["/transformer/windings"]);
     }
     if circuit.is_three_phase() != (parts.line.phases == Phases::Three) {
         let phases = if circuit.is_three_phase() {
@@ -167,92 +221,90 @@ fn output_faults(parts: &Parts, output: &Output, at: &str, faults: &mut Vec<Faul
         } else {
             "one phase"
         };
-        faults.push(Fault::new(
-            format!("{at}/rectifier/circuit"),
-            format!("{name} needs a line of {phases}; set /line/phases"),
-        ));
+        let detail = format!("{name} needs a line of {phases}; set /line/phases");
+        found.add(&circuit_at, detail, &["/line/phases"]);
     }
     if circuit.needs_tap() && parts.transformer.is_none() {
-        faults.push(Fault::new(
-            format!("{at}/rectifier/circuit"),
-            format!("{name} needs a tapped winding, hence a transformer"),
-        ));
+        let detail = format!("{name} needs a tapped winding, hence a transformer");
+        found.add(&circuit_at, detail, &["/transformer"]);
     }
-    columns(output, at, faults);
+    columns(output, at, found);
     if output.rails.len() != circuit.rails() {
         let wanted = if circuit.rails() == 2 {
             "two rails, positive first"
         } else {
             "one rail"
         };
-        faults.push(Fault::new(format!("{at}/rails"), format!("{name} feeds {wanted}")));
+        let detail = format!("{name} feeds {wanted}");
+        found.add(format!("{at}/rails"), detail, &[&circuit_at]);
     }
     for (index, rail) in output.rails.iter().enumerate() {
-        let at = format!("{at}/rails/{index}");
-        if rail.filter.len() > bounds::SECTIONS_MAXIMUM {
-            let most = bounds::SECTIONS_MAXIMUM;
-            faults.push(Fault::new(
-                format!("{at}/filter"),
-                format!("at most {most} sections are taken"),
-            ));
-        }
-        for (section_index, section) in rail.filter.iter().enumerate() {
-            let at = format!("{at}/filter/{section_index}");
-            if section.series.is_none() && section.capacitor.is_none() {
-                faults.push(Fault::new(&at, "a section has a series part, a capacitor, or both"));
-            }
-            if let Some(capacitor) = &section.capacitor {
-                count(capacitor.count, &format!("{at}/capacitor"), faults);
-            }
-        }
-        if let Load::Regulator { output_current, .. } = &rail.load
-            && output_current.high() == 0.0
-        {
-            faults.push(Fault::new(
-                format!("{at}/load/output_current"),
-                "a regulator without a load is a current load of its quiescent current",
-            ));
-        }
+        rail_faults(rail, &format!("{at}/rails/{index}"), found);
     }
 }
 
-fn columns(output: &Output, at: &str, faults: &mut Vec<Fault>) {
+fn rail_faults(rail: &Rail, at: &str, found: &mut Findings<'_>) {
+    if rail.filter.len() > bounds::SECTIONS_MAXIMUM {
+        let most = bounds::SECTIONS_MAXIMUM;
+        found.add(
+            format!("{at}/filter"),
+            format!("at most {most} sections are taken"),
+            &[],
+        );
+    }
+    for (index, section) in rail.filter.iter().enumerate() {
+        let at = format!("{at}/filter/{index}");
+        if section.series.is_none() && section.capacitor.is_none() {
+            let fields = [format!("{at}/series"), format!("{at}/capacitor")];
+            let detail = "a section has a series part, a capacitor, or both";
+            found.add(&at, detail, &[&fields[0], &fields[1]]);
+        }
+        if let Some(capacitor) = &section.capacitor {
+            count(capacitor.count, &format!("{at}/capacitor"), found);
+        }
+    }
+    if let Load::Regulator { output_current, .. } = &rail.load
+        && output_current.high() == 0.0
+    {
+        found.add(
+            format!("{at}/load/output_current"),
+            "a regulator without a load is a current load of its quiescent current",
+            &[],
+        );
+    }
+}
+
+fn columns(output: &Output, at: &str, found: &mut Findings<'_>) {
     let circuit = output.rectifier.circuit;
+    let name = circuit.name();
+    let doubler = matches!(circuit, Circuit::FullWaveDoubler | Circuit::HalfWaveDoubler);
     let needs = [
-        (
-            "stack",
-            output.rectifier.stack.as_ref(),
-            matches!(circuit, Circuit::FullWaveDoubler | Circuit::HalfWaveDoubler),
-        ),
+        ("stack", &output.rectifier.stack, doubler),
         (
             "coupling",
-            output.rectifier.coupling.as_ref(),
+            &output.rectifier.coupling,
             circuit == Circuit::HalfWaveDoubler,
         ),
     ];
+    let circuit_at = format!("{at}/rectifier/circuit");
     for (field, given, needed) in needs {
         let pointer = format!("{at}/rectifier/{field}");
         match (given, needed) {
-            (None, true) => faults.push(Fault::new(
-                pointer,
-                format!("{} needs its {field} capacitor", circuit.name()),
-            )),
-            (Some(_), false) => faults.push(Fault::new(
-                pointer,
-                format!("{} has no {field} capacitor", circuit.name()),
-            )),
-            (Some(capacitor), true) => count(capacitor.count, &pointer, faults),
+            (None, true) => found.add(pointer, format!("{name} needs its {field} capacitor"), &[&circuit_at]),
+            (Some(_), false) => found.add(pointer, format!("{name} has no {field} capacitor"), &[&circuit_at]),
+            (Some(capacitor), true) => count(capacitor.count, &pointer, found),
             (None, false) => {}
         }
     }
 }
 
-fn count(count: u32, at: &str, faults: &mut Vec<Fault>) {
+fn count(count: u32, at: &str, found: &mut Findings<'_>) {
     if count == 0 || count > bounds::COUNT_MAXIMUM {
         let most = bounds::COUNT_MAXIMUM;
-        faults.push(Fault::new(
+        found.add(
             format!("{at}/count"),
             format!("between 1 and {most} capacitors stand in parallel"),
-        ));
+            &[],
+        );
     }
 }
