@@ -4,6 +4,7 @@ use super::address::walk;
 use super::{Circuit, Fault, Harmonic, Load, Output, Parts, Phases, Rail, Transformer, WindingValues};
 use crate::bounds::{self, Range};
 use crate::quantity::{Band, Dimension, write_quantity};
+use std::fmt;
 
 /// Tells whether the value at a pointer is known, or stands in for one that could not be read.
 type Known<'a> = &'a dyn Fn(&str) -> bool;
@@ -15,14 +16,15 @@ struct Findings<'a> {
 }
 
 impl Findings<'_> {
-    fn knows(&self, pointer: &str) -> bool {
-        self.known.is_none_or(|known| known(pointer))
+    /// Takes the pieces of a pointer: they are put together only where somebody asks, not for every supply of a sweep.
+    fn knows(&self, pointer: fmt::Arguments<'_>) -> bool {
+        self.known.is_none_or(|known| known(&pointer.to_string()))
     }
 
     /// Adds a fault at a field, which rests on that field and on `others`.
     fn add(&mut self, pointer: impl Into<String>, detail: impl Into<String>, others: &[&str]) {
         let pointer = pointer.into();
-        if self.knows(&pointer) && others.iter().all(|other| self.knows(other)) {
+        if self.knows(format_args!("{pointer}")) && others.iter().all(|other| self.knows(format_args!("{other}"))) {
             self.list.push(Fault::new(pointer, detail));
         }
     }
@@ -78,8 +80,8 @@ fn taps(parts: &Parts, index: usize, found: &mut Findings<'_>) {
     let differs = |(other, o): (usize, &Output)| {
         o.winding == output.winding
             && o.rectifier.circuit.needs_tap() != tap
-            && found.knows(&format!("/outputs/{other}/winding"))
-            && found.knows(&format!("/outputs/{other}/rectifier/circuit"))
+            && found.knows(format_args!("/outputs/{other}/winding"))
+            && found.knows(format_args!("/outputs/{other}/rectifier/circuit"))
     };
     if exists && parts.outputs[..index].iter().enumerate().any(differs) {
         let detail = "an earlier output uses this winding the other way: a winding either has a tap or has none";
@@ -144,7 +146,7 @@ fn line(parts: &Parts, found: &mut Findings<'_>) {
     for (index, harmonic) in harmonics.iter().enumerate() {
         let pointer = format!("/line/harmonics/{index}/order");
         let same = |(other, h): (usize, &Harmonic)| {
-            h.order == harmonic.order && found.knows(&format!("/line/harmonics/{other}/order"))
+            h.order == harmonic.order && found.knows(format_args!("/line/harmonics/{other}/order"))
         };
         if harmonic.order < 2 || harmonic.order > bounds::HARMONIC_ORDER_MAXIMUM {
             let most = bounds::HARMONIC_ORDER_MAXIMUM;
@@ -167,7 +169,7 @@ fn windings(transformer: &Transformer, found: &mut Findings<'_>) {
     }
     let (mut nameplates, mut measured) = (false, false);
     for (index, winding) in transformer.windings.iter().enumerate() {
-        if found.knows(&format!("/transformer/windings/{index}")) {
+        if found.knows(format_args!("/transformer/windings/{index}")) {
             let is_nameplate = matches!(winding.values, WindingValues::Nameplate { .. });
             nameplates |= is_nameplate;
             measured |= !is_nameplate;
@@ -286,15 +288,18 @@ fn columns(output: &Output, at: &str, found: &mut Findings<'_>) {
             circuit == Circuit::HalfWaveDoubler,
         ),
     ];
-    let circuit_at = format!("{at}/rectifier/circuit");
     for (field, given, needed) in needs {
         let pointer = format!("{at}/rectifier/{field}");
-        match (given, needed) {
-            (None, true) => found.add(pointer, format!("{name} needs its {field} capacitor"), &[&circuit_at]),
-            (Some(_), false) => found.add(pointer, format!("{name} has no {field} capacitor"), &[&circuit_at]),
-            (Some(capacitor), true) => count(capacitor.count, &pointer, found),
-            (None, false) => {}
-        }
+        let detail = match (given, needed) {
+            (None, true) => format!("{name} needs its {field} capacitor"),
+            (Some(_), false) => format!("{name} has no {field} capacitor"),
+            (Some(capacitor), true) => {
+                count(capacitor.count, &pointer, found);
+                continue;
+            }
+            (None, false) => continue,
+        };
+        found.add(pointer, detail, &[&format!("{at}/rectifier/circuit")]);
     }
 }
 
