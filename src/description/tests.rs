@@ -5,6 +5,7 @@ mod at;
 mod faults;
 mod round_trip;
 mod schemas;
+mod single_faults;
 mod supplies;
 
 use super::json::{self, Json};

@@ -120,7 +120,7 @@ fn windings_phases_and_taps() {
 }
 
 #[test]
-fn rails_columns_and_sections() {
+fn rails_and_columns() {
     assert_cases(&[
         (
             "two rails of a bridge",
@@ -170,6 +170,12 @@ fn rails_columns_and_sections() {
             "/outputs/0/rectifier/coupling",
             "no coupling",
         ),
+    ]);
+}
+
+#[test]
+fn sections_loads_and_outputs() {
+    assert_cases(&[
         (
             "an empty section",
             |p| {
