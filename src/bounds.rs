@@ -94,7 +94,9 @@ pub const NAME_MAXIMUM: usize = 200;
 /// Corners solved one by one; beyond it (more than twelve bands) signs of the derivatives choose.
 pub const CORNERS_MAXIMUM: usize = 4096;
 /// Newton iterations and marched cycles before a search for the periodic state gives up.
-pub const CYCLES_MAXIMUM: usize = 3000;
+pub const CYCLES_MAXIMUM: usize = 1000;
+/// Changes of conduction located in one search for the periodic state: a sound circuit needs a few hundred.
+pub const EVENTS_MAXIMUM: usize = 20_000;
 /// Changes of conduction in one cycle: a rectifier has a few dozen, a chattering description never ends.
 pub const EVENTS_PER_CYCLE_MAXIMUM: usize = 400;
 /// Function evaluations spent on bracketing one event.

@@ -16,7 +16,7 @@ pub(super) const CAUTIONS: [&str; 3] = [
 ];
 
 /// What the model leaves out, in every answer.
-pub(super) const ASSUMPTIONS: [&str; 7] = [
+pub(super) const ASSUMPTIONS: [&str; 8] = [
     "Diodes follow the straight line of IEC 60747-2: open below V(TO), r_T above it; no reverse current, no recovery, no capacitance.",
     "Capacitors are a capacitance with a series resistance that do not change with frequency, voltage or temperature; no leakage.",
     "Chokes and windings do not saturate; the transformer draws no magnetising current and passes direct current.",
@@ -24,6 +24,7 @@ pub(super) const ASSUMPTIONS: [&str; 7] = [
     "Figures are of the periodic steady state; line transients, dips and imbalance are not part of it.",
     "A string of open diodes divides its reverse voltage equally.",
     "A current load draws its current as long as its rail is above zero.",
+    "The capacitors of a rail without any load leak a hundred-billionth of their reactive current, which settles them at the crest.",
 ];
 
 pub(super) fn cautions() -> Vec<String> {

@@ -40,6 +40,14 @@ impl Builder {
         &self.oscillator
     }
 
+    /// Farads of a branch; none where it is no capacitor.
+    pub(super) fn farads(&self, branch: usize) -> f64 {
+        match self.branches[branch].element {
+            Element::Capacitor(farads) => farads,
+            _ => 0.0,
+        }
+    }
+
     /// A new node, or the core of a transformer.
     pub fn node(&mut self) -> Node {
         self.rows += 1;

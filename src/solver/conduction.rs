@@ -129,6 +129,35 @@ impl<'a> Regimes<'a> {
         Ok(found)
     }
 
+    /// A full state as a pattern holds it: a current that has no path there is zero. The state as it is where the pattern contradicts
+    /// itself, or where more than rounding would be lost.
+    ///
+    /// # Errors
+    /// A [`SolverError`] where the pattern's numbers fail.
+    pub fn settled(&mut self, conducting: u64, full: &[f64], sources: &[f64]) -> Result<Vec<f64>, SolverError> {
+        let Ok(index) = self.find(conducting)? else {
+            return Ok(full.to_vec());
+        };
+        let regime = &self.ready[index];
+        let extended = extend(&contract(regime, full, sources), sources);
+        let held = multiply(&regime.pattern.expand, &extended);
+        let jumps = self.jumps(&held, full);
+        Ok(if jumps { full.to_vec() } else { held })
+    }
+
+    /// Whether a full state differs from another by more than rounding.
+    fn jumps(&self, new: &[f64], old: &[f64]) -> bool {
+        let (network, capacitors) = (self.network, self.network.capacitors.len());
+        new.iter().zip(old).enumerate().any(|(i, (new, old))| {
+            let scale = if i < capacitors {
+                network.voltage_scale
+            } else {
+                network.current_scale
+            };
+            (new - old).abs() > JUMP * scale.max(old.abs())
+        })
+    }
+
     /// The pattern in which every switch's condition holds from `instant` on, looked for from `hint` outwards.
     ///
     /// # Errors
@@ -213,15 +242,7 @@ impl<'a> Regimes<'a> {
         let state = contract(regime, instant.full, instant.sources);
         let extended = extend(&state, instant.sources);
         let expanded = multiply(&regime.pattern.expand, &extended);
-        let capacitors = self.network.capacitors.len();
-        let jumps = expanded.iter().zip(instant.full).enumerate().any(|(i, (new, old))| {
-            let scale = if i < capacitors {
-                self.network.voltage_scale
-            } else {
-                self.network.current_scale
-            };
-            (new - old).abs() > JUMP * scale.max(old.abs())
-        });
+        let jumps = self.jumps(&expanded, instant.full);
         let derivatives = derivatives(self.network, regime, extended);
         let (mut violated, mut resting) = (0, 0);
         for (switch, row) in regime.slack.iter().enumerate() {

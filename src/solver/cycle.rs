@@ -61,6 +61,7 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
     let diodes = network.diodes();
     work.cycles += 1;
     let mut scratch = Vec::new();
+    let mut stalled = Stall::default();
     for _ in 0..EVENTS_PER_CYCLE_MAXIMUM {
         network.oscillator.at(stretch.time, &mut stretch.sources);
         let instant = Instant {
@@ -76,12 +77,14 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
         stretch.enter(regime, &choice);
         let mut flow = Flow::new(choice.regime, regime, stretch.time, &choice.state, &stretch.sources);
         let watched = watch(network, regime, &flow, &mut scratch);
+        let left = end - stretch.time;
         let crossing = Search::new(&regime.basis, stretch.time, &watched)
-            .first(0.0, end - stretch.time)
+            .first(stalled.skipped(network.oscillator.period()).min(left), left)
             .map_err(|_| SolverError::EventSteps {
                 limit: EVENT_STEPS_MAXIMUM,
             })?;
-        flow.length = crossing.map_or(end - stretch.time, |c| c.since);
+        flow.length = crossing.map_or(left, |c| c.since);
+        stalled.take(flow.length, network.oscillator.period());
         let event = crossing.map(|c| watched[c.tag].switches.trailing_zeros() as usize);
         stretch.leave(regime, &flow, network, event);
         flows.push(flow);
@@ -96,6 +99,8 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
         };
         work.events += 1;
         hint ^= watched[crossing.tag].switches;
+        // What the event brought to zero is zero from here on, not what rounding left of it.
+        stretch.full = regimes.settled(hint, &stretch.full, &stretch.sources)?;
         if stretch.time >= end {
             stretch.time = end;
         }
@@ -103,6 +108,36 @@ pub fn run(regimes: &mut Regimes<'_>, task: Task<'_>, work: &mut Work) -> Result
     Err(SolverError::Chatter {
         limit: EVENTS_PER_CYCLE_MAXIMUM,
     })
+}
+
+/// Stretches shorter than this part of a cycle make no headway.
+const HEADWAY: f64 = 1e-8;
+/// So many of them, counted twice each and less one for each longer one, are a stall.
+const STALL: u32 = 8;
+
+/// Where conduction only grazes, its current is rounding and patterns take turns without headway. Every further turn then passes
+/// over a little more time before it looks for an event, a hundred millionth of a cycle at first: what conducts there is rounding too.
+#[derive(Clone, Copy, Debug, Default)]
+struct Stall {
+    turns: u32,
+}
+
+impl Stall {
+    fn take(&mut self, length: f64, period: f64) {
+        self.turns = match length / period {
+            part if part < HEADWAY => self.turns + 2,
+            part if part < 1e-3 => self.turns.saturating_sub(1),
+            _ => 0,
+        };
+    }
+
+    /// Seconds to pass over.
+    fn skipped(self, period: f64) -> f64 {
+        match self.turns.checked_sub(STALL) {
+            None => 0.0,
+            Some(extra) => 1e-8 * period * f64::from(1_u32 << extra.min(12)),
+        }
+    }
 }
 
 /// Slacks this near, relative to their size, are one: of diodes in series, or of opposite ones of a bridge.

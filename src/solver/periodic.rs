@@ -7,7 +7,7 @@
 use super::conduction::Regimes;
 use super::cycle::{Run, Task, run};
 use super::{SolverError, Work};
-use crate::bounds::CYCLES_MAXIMUM;
+use crate::bounds::{CYCLES_MAXIMUM, EVENTS_MAXIMUM};
 use crate::network::Network;
 use nalgebra::{DMatrix, DVector};
 
@@ -160,7 +160,7 @@ impl<'a> Shooting<'a> {
             full *= IDLE_FACTOR;
             shot = self.shoot(&full, true)?;
         }
-        while self.work.cycles < CYCLES_MAXIMUM {
+        while self.work.cycles < CYCLES_MAXIMUM && self.work.events < EVENTS_MAXIMUM {
             self.work.iterations += 1;
             if best.as_ref().is_none_or(|(residual, _)| shot.residual < *residual) {
                 best = Some((shot.residual, full.clone()));
@@ -234,6 +234,9 @@ impl<'a> Shooting<'a> {
 
     fn march(&mut self, mut full: DVector<f64>, cycles: usize) -> Result<(DVector<f64>, Shot), SolverError> {
         for _ in 0..cycles {
+            if self.work.events >= EVENTS_MAXIMUM {
+                break;
+            }
             let shot = self.shoot(&full, false)?;
             full += shot.change;
         }

@@ -141,7 +141,10 @@ fn lay_load(builder: &mut Builder, (positive, negative): (Node, Node), load: &Lo
                 laid.current += amperes;
             }
         }
-        Load::Open => lay_sink(builder, (positive, negative), 0.0, crest, laid),
+        Load::Open => {
+            lay_sink(builder, (positive, negative), 0.0, crest, laid);
+            lay_leak(builder, (positive, negative), laid);
+        }
     }
 }
 
@@ -151,6 +154,19 @@ fn freewheel(crest: f64) -> Element {
     Element::Switch {
         threshold: 1e-12 * crest,
         slope: 0.0,
+    }
+}
+
+/// Without any load a capacitor keeps whatever charge it once got, and no steady state is singled out. Every real one leaks; here a
+/// hundred-billionth of its reactive current, which settles it at the crest and shows in no figure beyond 1e-7.
+const LEAK: f64 = 1e-11;
+
+/// The leak of an open rail's capacitors; nothing where there are none.
+fn lay_leak(builder: &mut Builder, (positive, negative): (Node, Node), laid: &Laid) {
+    let farads: f64 = laid.charge.iter().map(|(branch, _)| builder.farads(*branch)).sum();
+    if farads > 0.0 {
+        let ohms = 1.0 / (LEAK * builder.oscillator().angular_frequency * farads);
+        builder.branch(positive, negative, Element::Resistor(ohms));
     }
 }
 
