@@ -5,8 +5,11 @@ use crate::policy;
 use crate::quantity::write_quantity;
 use crate::worst_case::{Attained, Chosen};
 use serde::Serialize;
+use std::borrow::Cow;
 use std::collections::BTreeMap;
-use utoipa::ToSchema;
+use utoipa::openapi::RefOr;
+use utoipa::openapi::schema::{ObjectBuilder, Schema, SchemaType, Type};
+use utoipa::{PartialSchema, ToSchema};
 
 /// What every answer says: results do not replace people.
 pub(super) const CAUTIONS: [&str; 3] = [
@@ -322,11 +325,33 @@ fn diode(diode: &plain::DiodeFigures) -> DiodeFigures {
 }
 
 /// For each uncertain quantity, by its JSON Pointer, the end of its band (`low`, `nominal`, `high`) or a value within it.
-pub type Ends = BTreeMap<String, String>;
+#[derive(Clone, Debug, Default, PartialEq, Eq, Serialize)]
+pub struct Ends(BTreeMap<String, String>);
+
+impl PartialSchema for Ends {
+    fn schema() -> RefOr<Schema> {
+        let end = ObjectBuilder::new().schema_type(SchemaType::Type(Type::String)).description(Some(
+            "`low`, `nominal`, `high`, or a quantity within the band, as text with its unit.",
+        ));
+        ObjectBuilder::new()
+            .schema_type(SchemaType::Type(Type::Object))
+            .description(Some("For some quantities, by their JSON Pointer inside the supply, where in the band they stand."))
+            .additional_properties(Some(end))
+            .examples([serde_json::json!({"/line/voltage": "high"})])
+            .build()
+            .into()
+    }
+}
+
+impl ToSchema for Ends {
+    fn name() -> Cow<'static, str> {
+        Cow::Borrowed("Ends")
+    }
+}
 
 /// The ends at which something is attained.
 pub(super) fn ends(attained: &[Attained]) -> Ends {
-    attained
+    let ends = attained
         .iter()
         .map(|a| {
             let text = match a.chosen {
@@ -335,7 +360,8 @@ pub(super) fn ends(attained: &[Attained]) -> Ends {
             };
             (a.pointer.clone(), text)
         })
-        .collect()
+        .collect();
+    Ends(ends)
 }
 
 /// The outcome of one check.
@@ -404,7 +430,6 @@ pub struct Check {
     /// The outcome.
     pub verdict: Verdict,
     /// The ends at which the stress is attained, by JSON Pointer.
-    #[schema(example = json!({"/line/voltage": "high"}))]
     pub at: Ends,
     /// The rule's source.
     #[schema(example = "MIL-STD-975M Appendix A, 3.4: PIV 0.70")]
@@ -453,10 +478,8 @@ pub struct FigureRange {
     #[schema(example = 27.9)]
     pub maximum: f64,
     /// The ends at which the lowest is attained, by JSON Pointer.
-    #[schema(example = json!({"/line/voltage": "low"}))]
     pub at_minimum: Ends,
     /// The ends at which the highest is attained, by JSON Pointer.
-    #[schema(example = json!({"/line/voltage": "high"}))]
     pub at_maximum: Ends,
     /// How both are known.
     pub known_by: KnownBy,

@@ -158,7 +158,6 @@ pub struct Pick {
     #[schema(example = "V")]
     pub unit: String,
     /// The corner that asks for it.
-    #[schema(example = json!({"/line/voltage": "high"}))]
     pub at: Ends,
     /// Where the preferred values or the requirement come from.
     #[schema(example = "preferred reverse voltages, common practice")]

@@ -1,7 +1,7 @@
 //! `POST /v1/operating-point`.
 
 use super::AppState;
-use super::answer::{self, Figures};
+use super::answer::{self, Ends, Figures};
 use super::examples;
 use super::extract::Body;
 use super::negotiate::{self, Known};
@@ -16,7 +16,6 @@ use axum::extract::State;
 use axum::http::{HeaderMap, header};
 use axum::response::{IntoResponse, Response};
 use serde::Serialize;
-use std::collections::BTreeMap;
 use utoipa::ToSchema;
 use utoipa_axum::router::OpenApiRouter;
 use utoipa_axum::routes;
@@ -53,8 +52,8 @@ pub struct OperatingPointRequest {
     pub supply: form::Supply,
     /// For some quantities, by JSON Pointer inside the supply, an end of the band (`low`, `nominal`, `high`) or a quantity within it; all
     /// others are nominal.
-    #[schema(required = false, nullable = false, example = json!({"/line/voltage": "low"}))]
-    pub at: Option<BTreeMap<String, String>>,
+    #[schema(required = false, nullable = false)]
+    pub at: Option<Ends>,
     /// Asks for one cycle of waveforms.
     #[schema(required = false, nullable = false)]
     pub waveforms: Option<WaveformsRequest>,
