@@ -330,12 +330,16 @@ pub struct Ends(BTreeMap<String, String>);
 
 impl PartialSchema for Ends {
     fn schema() -> RefOr<Schema> {
-        let end = ObjectBuilder::new().schema_type(SchemaType::Type(Type::String)).description(Some(
-            "`low`, `nominal`, `high`, or a quantity within the band, as text with its unit.",
-        ));
+        let end = ObjectBuilder::new()
+            .schema_type(SchemaType::Type(Type::String))
+            .description(Some(
+                "`low`, `nominal`, `high`, or a quantity within the band, as text with its unit.",
+            ));
         ObjectBuilder::new()
             .schema_type(SchemaType::Type(Type::Object))
-            .description(Some("For some quantities, by their JSON Pointer inside the supply, where in the band they stand."))
+            .description(Some(
+                "For some quantities, by their JSON Pointer inside the supply, where in the band they stand.",
+            ))
             .additional_properties(Some(end))
             .examples([serde_json::json!({"/line/voltage": "high"})])
             .build()

@@ -7,9 +7,6 @@ mod operating_point;
 mod sweep;
 mod worst_case;
 
-#[cfg(test)]
-mod tests;
-
 pub use derating::Derated;
 pub use design::Designed;
 pub use operating_point::OperatingPoint;

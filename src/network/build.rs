@@ -13,7 +13,7 @@ impl Node {
 
 /// A winding in series with a branch: which core, and how many turns. A positive current through the branch magnetises
 /// the core with `turns` ampere-turns.
-pub(super) type Turns = (Node, f64);
+pub type Turns = (Node, f64);
 
 /// Builds a network branch by branch.
 #[derive(Debug)]
@@ -75,7 +75,7 @@ impl Builder {
 
     /// Elements in series from `from` to `to`, with a winding in series where `turns` is given; the branches' indices.
     /// At least one branch is laid: a wire where nothing else is there.
-    pub(super) fn series(&mut self, from: Node, to: Node, turns: Option<Turns>, elements: Vec<Element>) -> Vec<usize> {
+    pub fn series(&mut self, from: Node, to: Node, turns: Option<Turns>, elements: Vec<Element>) -> Vec<usize> {
         let elements = if elements.is_empty() {
             vec![Element::Wire]
         } else {

@@ -17,7 +17,7 @@ mod probes;
 #[cfg(test)]
 mod tests;
 
-pub use build::{Builder, Node};
+pub use build::{Builder, Node, Turns};
 pub use pattern::{Pattern, Unsolvable};
 pub use probes::{CapacitorProbe, ChokeProbe, DiodeProbe, OutputProbes, Probes, RailProbe, Signal};
 

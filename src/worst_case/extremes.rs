@@ -7,6 +7,8 @@ use rayon::prelude::*;
 
 /// Points looked at inside a band along which a figure's sign of change differs between corners.
 const INTERIOR: usize = 9;
+/// Rounds of such looking, each from the best points of the one before.
+const ROUNDS: usize = 3;
 /// A change this small, relative to the figure, has no sign.
 const FLAT: f64 = 1e-9;
 
@@ -112,8 +114,13 @@ pub fn survey<E: Send>(
         None => by_signs(&corners, &nominal, &solve_all)?,
     };
     survey.points.push((corners.nominal(), nominal.clone()));
-    let inside = solve_all(interior_points(&corners, &survey, &mixed))?;
-    survey.points.extend(inside.points);
+    for _ in 0..ROUNDS {
+        let further = further_points(&corners, &survey, &mixed);
+        if further.is_empty() {
+            break;
+        }
+        survey.points.extend(solve_all(further)?.points);
+    }
     let ranges = (0..nominal.len())
         .map(|figure| {
             let known = if count.is_some() && mixed.iter().all(|(f, _)| *f != figure) {
@@ -175,18 +182,27 @@ fn mixed_bands(corners: &Corners<'_>, survey: &Survey, figures: usize) -> Vec<(u
     mixed
 }
 
-/// Points inside the bands along which a figure may have an extreme, from the best corners known.
-fn interior_points(corners: &Corners<'_>, survey: &Survey, mixed: &[(usize, usize)]) -> Vec<Vec<f64>> {
+/// Points around the best ones known, for figures that may have an extreme inside: along a band with mixed signs points inside it,
+/// along any other its ends, since the best end may be another one there.
+fn further_points(corners: &Corners<'_>, survey: &Survey, mixed: &[(usize, usize)]) -> Vec<Vec<f64>> {
     let mut points: Vec<Vec<f64>> = Vec::new();
-    for &(figure, band) in mixed {
+    let mut figures: Vec<usize> = mixed.iter().map(|(figure, _)| *figure).collect();
+    figures.dedup();
+    for figure in figures {
         for best in [lowest(survey, figure), highest(survey, figure)] {
-            let slot = &corners.bands[band].band;
-            for step in 1..=INTERIOR {
-                let share = step as f64 / (INTERIOR + 1) as f64;
-                let mut point = survey.points[best].0.clone();
-                point[band] = slot.low() + share * (slot.high() - slot.low());
-                if !points.contains(&point) {
-                    points.push(point);
+            for (band, slot) in corners.bands.iter().enumerate() {
+                let inner = if mixed.contains(&(figure, band)) { INTERIOR } else { 0 };
+                for step in 0..=inner + 1 {
+                    let share = step as f64 / (inner + 1) as f64;
+                    let mut point = survey.points[best].0.clone();
+                    point[band] = match step {
+                        0 => slot.band.low(),
+                        _ if step == inner + 1 => slot.band.high(),
+                        _ => slot.band.low() + share * (slot.band.high() - slot.band.low()),
+                    };
+                    if !points.contains(&point) && survey.points.iter().all(|(known, _)| *known != point) {
+                        points.push(point);
+                    }
                 }
             }
         }
