@@ -3,10 +3,10 @@
 use super::worst_case::worst_case;
 use super::{App, AppError};
 use crate::network::Network;
-use crate::policy::{Check, Policy, Quantity, Subject, Whole, check, subjects};
+use crate::policy::{Check, Policy, Quantity, Subject, Whole, Worst, check, subjects};
 use crate::supply::Supply;
 use crate::transient::switch_on_surge;
-use crate::worst_case::{Attained, Extremes, survey};
+use crate::worst_case::{Extremes, survey};
 
 /// The checks of a policy.
 #[derive(Clone, Debug)]
@@ -22,7 +22,7 @@ pub struct Derated {
 }
 
 /// The largest diode current of each output at switch-on, over the corners, with the corner.
-pub(super) fn surges(supply: &Supply, corners_maximum: usize) -> Result<Vec<(f64, Vec<Attained>)>, AppError> {
+pub(super) fn surges(supply: &Supply, corners_maximum: usize) -> Result<Vec<Worst>, AppError> {
     let extremes = survey(supply, corners_maximum, |point| -> Result<_, AppError> {
         Ok(switch_on_surge(&Network::of(point))?)
     })?;
@@ -44,17 +44,8 @@ fn derate(supply: &Supply, policy: Policy, corners_maximum: usize) -> Result<Der
     } else {
         Vec::new()
     };
-    let stress = |subject: &Subject| {
-        if subject.figures.is_empty() {
-            return surges.get(subject.output).cloned();
-        }
-        let ranges = subject.figures.iter().filter_map(|figure| {
-            let index = worst.figures.iter().position(|(pointer, _)| pointer == figure)?;
-            worst.extremes.ranges.get(index)
-        });
-        let most = ranges.max_by(|a, b| a.maximum.total_cmp(&b.maximum))?;
-        Some((most.maximum / subject.shared_by, most.at_maximum.clone()))
-    };
+    let place = |wanted: &str| worst.figures.iter().position(|(pointer, _)| pointer == wanted);
+    let stress = |subject: &Subject| subject.worst(&worst.extremes, place, &surges);
     let (checks, verdict) = check(&policy, &subjects(supply), stress);
     Ok(Derated {
         policy,

@@ -2,7 +2,7 @@
 
 use super::Need;
 use super::size::Nameplate;
-use crate::policy::{Policy, Quantity, Subject, subjects};
+use crate::policy::{Policy, Quantity, Subject, Worst, subjects};
 use crate::quantity::next_up;
 use crate::supply::Supply;
 use crate::worst_case::Attained;
@@ -62,7 +62,7 @@ pub(super) struct Unreachable {
 pub(super) fn ratings(
     supply: &Supply,
     policy: &Policy,
-    stress: impl Fn(&Subject) -> Option<(f64, Vec<Attained>)>,
+    stress: impl Fn(&Subject) -> Option<Worst>,
 ) -> Result<Vec<Pick>, Unreachable> {
     let mut picks = Vec::new();
     for subject in subjects(supply) {
@@ -154,6 +154,31 @@ pub(super) fn transformer(plate: Nameplate, exact: Nameplate, valley: &[Attained
             "assumed relation of regulation to rating",
         ),
     ]
+}
+
+/// The resistances that the nameplate stands for: what a transformer may have at the most.
+pub(super) fn resistances(supply: &Supply) -> Vec<Pick> {
+    let Some(derived) = supply.derived_transformer() else {
+        return Vec::new();
+    };
+    let pick = |quantity, ohms: f64| Pick {
+        component: "/transformer".to_owned(),
+        quantity,
+        stress: ohms,
+        factor: 1.0,
+        required: ohms,
+        chosen: None,
+        unit: "ohm",
+        at: Vec::new(),
+        source: "half of the assumed regulation to each side; the most that the winding may have",
+    };
+    let windings = derived
+        .windings
+        .iter()
+        .map(|winding| pick("winding_resistance", winding.resistance));
+    std::iter::once(pick("primary_resistance", derived.primary_resistance))
+        .chain(windings)
+        .collect()
 }
 
 /// The line fuse.

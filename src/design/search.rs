@@ -4,10 +4,10 @@ use super::pick::{self, Pick};
 use super::size::{Nameplate, Places, Sizing, load_current};
 use super::{Minimise, Need};
 use crate::figures::Figures;
-use crate::policy::{Check, Policy, Subject, Whole, check, subjects};
+use crate::policy::{Check, Policy, Subject, Whole, Worst, check, subjects};
 use crate::quantity::{Band, Series};
 use crate::supply::{Circuit, Supply};
-use crate::worst_case::{Attained, Extremes, Range};
+use crate::worst_case::{Extremes, Range};
 
 /// Capacitances tried for one circuit.
 const CAPACITANCES_MAXIMUM: usize = 12;
@@ -84,7 +84,7 @@ pub fn search<E: Send>(
     policy: &Policy,
     corners_maximum: usize,
     solve: &(impl Fn(&Supply) -> Result<Figures, E> + Sync),
-    surge: &(impl Fn(&Supply) -> Result<Vec<(f64, Vec<Attained>)>, E> + Sync),
+    surge: &(impl Fn(&Supply) -> Result<Vec<Worst>, E> + Sync),
 ) -> Outcome {
     use rayon::prelude::*;
     let values = |supply: &Supply| solve(supply).map(|figures| figures.values());
@@ -174,7 +174,7 @@ fn one<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
     sizing: &Sizing<'_, Solve>,
     policy: &Policy,
     solve: &impl Fn(&Supply) -> Result<Figures, E>,
-    surge: &impl Fn(&Supply) -> Result<Vec<(f64, Vec<Attained>)>, E>,
+    surge: &impl Fn(&Supply) -> Result<Vec<Worst>, E>,
 ) -> Result<Verdict, E> {
     let unsized_miss = || Verdict::Rejected("no winding voltage holds the valley".to_owned(), None);
     let Some(first) = sizing.supply(sizing.plate(10.0, 1.0)) else {
@@ -213,7 +213,7 @@ struct Sized {
     exact: Nameplate,
     plate: Nameplate,
     supply: Supply,
-    surges: Vec<(f64, Vec<Attained>)>,
+    surges: Vec<Worst>,
     extremes: Extremes,
     pointers: Vec<(String, &'static str)>,
 }
@@ -224,8 +224,9 @@ impl Sized {
         self.extremes.ranges.get(index)
     }
 
-    fn stress(&self, subject: &Subject) -> Option<(f64, Vec<Attained>)> {
-        worst_stress(subject, &self.extremes, &self.pointers, &self.surges)
+    fn stress(&self, subject: &Subject) -> Option<Worst> {
+        let place = |wanted: &str| self.pointers.iter().position(|(pointer, _)| pointer == wanted);
+        subject.worst(&self.extremes, place, &self.surges)
     }
 }
 
@@ -260,6 +261,7 @@ fn completed<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
         &valley.unwrap_or_default(),
         &current.unwrap_or_default(),
     );
+    picks.extend(pick::resistances(&sized.supply));
     picks.push(capacitance_pick(sizing.capacitance));
     picks.append(&mut ratings);
     if let Some(range) = sized.range("/line/current_rms") {
@@ -366,25 +368,6 @@ fn misses<E: Send, Solve: Fn(&Supply) -> Result<Vec<f64>, E> + Sync>(
         }
     }
     None
-}
-
-/// A subject's worst stress over the corners, and where.
-pub(super) fn worst_stress(
-    subject: &Subject,
-    extremes: &Extremes,
-    pointers: &[(String, &'static str)],
-    surges: &[(f64, Vec<Attained>)],
-) -> Option<(f64, Vec<Attained>)> {
-    if subject.figures.is_empty() {
-        return surges.get(subject.output).cloned();
-    }
-    let ranges = subject.figures.iter().filter_map(|figure| {
-        let index = pointers.iter().position(|(pointer, _)| pointer == figure)?;
-        extremes.ranges.get(index)
-    });
-    ranges
-        .max_by(|a, b| a.maximum.total_cmp(&b.maximum))
-        .map(|range| (range.maximum / subject.shared_by, range.at_maximum.clone()))
 }
 
 /// The supply with the chosen ratings written into its parts; where nothing is preferred, what is required is the rating.

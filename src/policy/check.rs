@@ -1,6 +1,6 @@
 //! Stresses held against ratings.
 
-use super::subject::{Quantity, Subject};
+use super::subject::{Quantity, Subject, Worst};
 use super::{Policy, Rule};
 use crate::worst_case::Attained;
 
@@ -57,11 +57,7 @@ pub struct Check {
 /// Holds every subject that a rule of the policy speaks of against it. `stress` gives a subject's worst stress and where it is
 /// attained.
 #[must_use]
-pub fn check(
-    policy: &Policy,
-    subjects: &[Subject],
-    stress: impl Fn(&Subject) -> Option<(f64, Vec<Attained>)>,
-) -> (Vec<Check>, Whole) {
+pub fn check(policy: &Policy, subjects: &[Subject], stress: impl Fn(&Subject) -> Option<Worst>) -> (Vec<Check>, Whole) {
     let mut checks = Vec::new();
     for subject in subjects {
         for rule in policy.rules.iter().filter(|rule| rule.quantity == subject.quantity) {

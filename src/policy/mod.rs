@@ -13,7 +13,7 @@ mod tests;
 
 pub use check::{Check, Verdict, Whole, check};
 pub use published::{PUBLISHED, published};
-pub use subject::{Quantity, Subject, subjects};
+pub use subject::{Quantity, Subject, Worst, subjects};
 
 use std::borrow::Cow;
 

@@ -1,6 +1,7 @@
 //! What rules are about: the stresses and ratings of a supply's components.
 
 use crate::supply::{Capacitor, Supply};
+use crate::worst_case::{Attained, Extremes};
 
 /// A quantity of a kind of component that has a rating.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
@@ -88,7 +89,28 @@ pub struct Subject {
     pub output: usize,
 }
 
-/// Everything a policy may rule on in a supply. `diodes` and `chokes` follow the figures' order.
+/// A stress and the ends that attain it.
+pub type Worst = (f64, Vec<Attained>);
+
+impl Subject {
+    /// The worst stress over the corners, and where. `place` finds a figure among the extremes by its pointer; `surges` are the
+    /// largest diode currents at switch-on, one an output, which no figure of the steady state tells.
+    #[must_use]
+    pub fn worst(&self, extremes: &Extremes, place: impl Fn(&str) -> Option<usize>, surges: &[Worst]) -> Option<Worst> {
+        if self.figures.is_empty() {
+            return surges.get(self.output).cloned();
+        }
+        let ranges = self
+            .figures
+            .iter()
+            .filter_map(|figure| extremes.ranges.get(place(figure)?));
+        ranges
+            .max_by(|a, b| a.maximum.total_cmp(&b.maximum))
+            .map(|range| (range.maximum / self.shared_by, range.at_maximum.clone()))
+    }
+}
+
+/// Everything a policy may rule on in a supply.
 #[must_use]
 pub fn subjects(supply: &Supply) -> Vec<Subject> {
     let mut subjects = Vec::new();

@@ -189,12 +189,6 @@ test("it prints with its results and without its buttons", async () => {
   assert.ok(pdf.length > 20_000);
 });
 
-test("the API's documentation page works by itself", async () => {
-  const page = await open(browser, {}, "/docs/");
-  await page.waitForSelector('text="/v1/operating-point"');
-  assert.deepEqual(page.trouble, []);
-});
-
 test("a curl line of the page gives what the page shows", async () => {
   const page = await open(browser);
   await solved(page);
