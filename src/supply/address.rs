@@ -334,6 +334,19 @@ impl Supply {
         Self { parts }
     }
 
+    /// This supply with some of its bands at values within them, and every other band nominal. A value outside its band counts as the
+    /// nearest end, so that what comes back is as sound as this supply is.
+    #[must_use]
+    pub fn at_values(&self, values: &[(&str, f64)]) -> Self {
+        let mut parts = self.clone().into_parts();
+        walk(&mut parts, &mut |visit, band| {
+            let chosen = values.iter().find(|(pointer, _)| *pointer == visit.pointer);
+            let value = chosen.map_or(band.nominal(), |(_, value)| value.clamp(band.low(), band.high()));
+            *band = Band::point(value).unwrap_or(band.collapsed(End::Nominal));
+        });
+        Self { parts }
+    }
+
     /// This supply with some quantities replaced; all others are kept as they are.
     ///
     /// # Errors

@@ -1,6 +1,6 @@
 //! The corners of a supply's bands.
 
-use crate::quantity::{Band, End};
+use crate::quantity::End;
 use crate::supply::{Slot, Supply};
 
 /// The uncertain quantities that act on the circuit; ratings and surroundings do not.
@@ -46,15 +46,13 @@ impl<'a> Corners<'a> {
     /// The supply with every band at a value: `values` one a band.
     #[must_use]
     pub fn at(&self, values: &[f64]) -> Supply {
-        let chosen: Vec<(&str, Band)> = self
+        let chosen: Vec<(&str, f64)> = self
             .bands
             .iter()
             .zip(values)
-            .filter_map(|(slot, value)| Some((slot.pointer.as_str(), Band::point(*value).ok()?)))
+            .map(|(slot, value)| (slot.pointer.as_str(), *value))
             .collect();
-        let nominal = self.supply.at_ends(|_| None);
-        // Values within the bands of a sound supply make a sound supply.
-        nominal.with(&chosen).unwrap_or(nominal)
+        self.supply.at_values(&chosen)
     }
 
     /// The values of corner `index`: bit `i` set means that band `i` stands at its high end.

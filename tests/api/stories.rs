@@ -70,6 +70,34 @@ async fn the_worst_case_is_attained_where_it_says() {
     }
 }
 
+/// A load that may vanish is open at one of its ends: the rail rises to the crest there.
+#[tokio::test]
+async fn a_load_may_vanish_at_one_of_its_ends() {
+    let app = TestApp::new();
+    for (kind, load) in [
+        ("current", json!({"kind": "current", "current": "1 A (0 A to 1 A)"})),
+        (
+            "regulator",
+            json!({"kind": "regulator", "output_voltage": "15 V", "output_current": "1 A (0 A to 1 A)", "dropout": "1 V"}),
+        ),
+    ] {
+        let mut body = json!({"supply": supply()});
+        body["supply"]["outputs"][0]["rails"][0]["load"] = load;
+        let worst = app.post("/v1/worst-case", &body).await;
+        assert_eq!(worst.status, 200, "{kind}: {}", worst.text());
+        let worst = worst.json();
+        let valley = &worst["figures"][1];
+        let crest = 253.0 / 230.0 * 20.5 * std::f64::consts::SQRT_2 - 2.0 * 0.78;
+        let highest = valley["maximum"].as_f64().unwrap();
+        // The core loss takes a little of it in the primary's resistance.
+        assert!(
+            highest < crest && highest > 0.997 * crest,
+            "{kind}: {highest} for {crest}"
+        );
+        assert_eq!(worst["figures"][5]["minimum"], 0.0, "{}", worst["figures"][5]);
+    }
+}
+
 #[tokio::test]
 async fn derating_passes_fails_and_stays_incomplete() {
     let app = TestApp::new();

@@ -141,10 +141,10 @@ fn lay_load(builder: &mut Builder, (positive, negative): (Node, Node), load: &Lo
                 laid.current += amperes;
             }
         }
-        Load::Open => {
-            lay_sink(builder, (positive, negative), 0.0, crest, laid);
-            lay_leak(builder, (positive, negative), laid);
-        }
+        Load::Open => lay_sink(builder, (positive, negative), 0.0, crest, laid),
+    }
+    if laid.current == 0.0 {
+        lay_leak(builder, (positive, negative), laid);
     }
 }
 
@@ -161,7 +161,7 @@ fn freewheel(crest: f64) -> Element {
 /// hundred-billionth of its reactive current, which settles it at the crest and shows in no figure beyond 1e-7.
 const LEAK: f64 = 1e-11;
 
-/// The leak of an open rail's capacitors; nothing where there are none.
+/// The leak of the capacitors of a rail that draws nothing; nothing where there are none.
 fn lay_leak(builder: &mut Builder, (positive, negative): (Node, Node), laid: &Laid) {
     let farads: f64 = laid.charge.iter().map(|(branch, _)| builder.farads(*branch)).sum();
     if farads > 0.0 {

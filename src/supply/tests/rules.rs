@@ -3,7 +3,7 @@
 use super::{at, band, capacitor, measured, nameplate, output, parts, rail, wound};
 use crate::bounds;
 use crate::quantity::Band;
-use crate::supply::{Circuit, Harmonic, Load, Parts, Phases, Section, Supply, WindingValues};
+use crate::supply::{Circuit, Harmonic, Parts, Phases, Section, Supply, WindingValues};
 
 type Case = (&'static str, fn(&mut Parts), &'static str, &'static str);
 
@@ -204,19 +204,6 @@ fn sections_loads_and_outputs() {
             },
             "/outputs/0/rails/0/filter/0/capacitor/count",
             "between 1 and 1000",
-        ),
-        (
-            "a regulator that feeds nothing",
-            |p| {
-                p.outputs[0].rails[0].load = Load::Regulator {
-                    output_voltage: at(15.0),
-                    output_current: at(0.0),
-                    dropout: at(1.2),
-                    quiescent_current: at(0.0),
-                };
-            },
-            "/outputs/0/rails/0/load/output_current",
-            "without a load",
         ),
         ("no output", |p| p.outputs.clear(), "/outputs", "at least one"),
         (
